@@ -1,0 +1,1 @@
+"""Fifth floor: one function a rule over a network."""

@@ -1,0 +1,107 @@
+"""Rules that need a linear problem: energy from nothing, reactions that can never carry flux."""
+
+from __future__ import annotations
+
+from fractions import Fraction
+from typing import TYPE_CHECKING
+
+from yieldnet.foundation.findings import Findings, Severity
+from yieldnet.model.network import CarrierKind, Direction
+from yieldnet.optimum.problem import FREE, Bounds, ProblemBuilder
+from yieldnet.optimum.proof import Status
+
+if TYPE_CHECKING:
+    from yieldnet.model.binding import BoundNetwork
+    from yieldnet.optimum.problem import Problem
+    from yieldnet.optimum.proof import Optimiser
+
+__all__ = ["blocked_reactions", "energy_from_nothing"]
+
+_ZERO = Fraction(0)
+_ONE = Fraction(1)
+_SHUT = Bounds(_ZERO, _ZERO)
+
+
+def _steady_state(bound: BoundNetwork, crossing_open: bool, largest: Fraction | None) -> Problem:
+    """Steady state of the network alone: fluxes, crossing rates, surplus of energy carriers."""
+    builder = ProblemBuilder()
+    sums: dict[str, dict[str, Fraction]] = {}
+    for reaction in bound.reactions:
+        least = None if reaction.reversible and largest is None else _ZERO
+        if reaction.reversible and largest is not None:
+            least = -largest
+        builder.add_column(reaction.name, Bounds(least, largest))
+        for name, amount in reaction.coefficients:
+            sums.setdefault(name, {})[reaction.name] = amount
+    ways = {
+        Direction.CONSUMED: Bounds(None, _ZERO),
+        Direction.PRODUCED: Bounds(_ZERO, None),
+        Direction.EITHER: FREE,
+    }
+    for name, direction in bound.network.crossing:
+        builder.add_column(f"crossing {name}", ways[direction] if crossing_open else _SHUT)
+        sums.setdefault(name, {})[f"crossing {name}"] = -_ONE
+    for item in bound.network.carriers:
+        if item.kind is CarrierKind.ENERGY:
+            builder.add_column(f"surplus {item.name}", Bounds(_ZERO, None))
+            sums.setdefault(item.name, {})[f"surplus {item.name}"] = -_ONE
+    for name, entries in sums.items():
+        builder.add_row(name, "pathways", _SHUT, entries)
+    return builder.build()
+
+
+def energy_from_nothing(bound: BoundNetwork, optimiser: Optimiser) -> Findings:
+    """Loops that make an energy carrier with nothing crossing the cell boundary."""
+    findings = Findings()
+    problem = _steady_state(bound, crossing_open=False, largest=None)
+    for item in bound.network.carriers:
+        if item.kind is not CarrierKind.ENERGY:
+            continue
+        answer = optimiser.optimise(problem, {f"surplus {item.name}": _ONE})
+        if answer.status is not Status.UNBOUNDED:
+            continue
+        fluxes = dict(answer.direction)
+        made = fluxes.get(f"surplus {item.name}", _ONE)
+        loop = [
+            f"{name}{' backwards' if fluxes[name] < 0 else ''}"
+            for name in (reaction.name for reaction in bound.reactions)
+            if fluxes.get(name)
+        ]
+        spans = [
+            reaction.span
+            for reaction in bound.reactions
+            if fluxes.get(reaction.name) and reaction.span
+        ]
+        findings.add(
+            "YN408",
+            f"{item.name} comes from nothing in the loop " + ", ".join(loop),
+            spans[0] if spans else None,
+            left=f"{float(made):.3g} {item.name} a turn, nothing taken up",
+            hint="Make one of these reactions one-way, or correct its ATP.",
+        )
+    return findings
+
+
+def blocked_reactions(bound: BoundNetwork, optimiser: Optimiser) -> Findings:
+    """Reactions that can carry no flux at steady state, whatever crosses the boundary."""
+    findings = Findings()
+    problem = _steady_state(bound, crossing_open=True, largest=_ONE)
+    moving: set[str] = set()
+    for reaction in bound.reactions:
+        if reaction.name in moving:
+            continue
+        for maximise in (True, False):
+            answer = optimiser.optimise(problem, {reaction.name: _ONE}, maximise)
+            if answer.status is Status.OPTIMAL:
+                moving.update(item.name for item in bound.reactions if answer[item.name])
+            if reaction.name in moving or not reaction.reversible:
+                break
+        if reaction.name not in moving:
+            findings.add(
+                "YN407",
+                f"{reaction.name!r} can never carry flux",
+                reaction.span,
+                hint="Something it needs is never made, or something it makes never used.",
+                severity=Severity.WARNING,
+            )
+    return findings

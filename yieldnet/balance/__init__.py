@@ -1,0 +1,1 @@
+"""Fifth floor: over the cell - element matrix, freedom, reconciled point."""

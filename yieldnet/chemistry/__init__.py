@@ -1,0 +1,1 @@
+"""First floor: atomic weights, formulas, compound and biomass library."""

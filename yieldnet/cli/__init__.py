@@ -1,0 +1,1 @@
+"""Top floor: the command line, one small file a verb."""

@@ -1,0 +1,1 @@
+"""Ground floor: errors, findings, exact numbers, units, sourced values."""

@@ -1,0 +1,1 @@
+"""Second floor: equations, reactions, networks and cases as frozen values, without files."""

@@ -1,0 +1,259 @@
+"""A case: one question with an overall equation, conditions, measurements, demands and an aim."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field, replace
+from enum import StrEnum
+from typing import TYPE_CHECKING
+
+if TYPE_CHECKING:
+    from fractions import Fraction
+
+    from yieldnet.foundation.exact import WrittenNumber
+    from yieldnet.foundation.findings import Finding, SourceSpan
+    from yieldnet.model.equation import Equation
+    from yieldnet.model.network import Compound, Direction, Network
+
+__all__ = [
+    "Aim",
+    "AimDirection",
+    "Case",
+    "Condition",
+    "Demand",
+    "EnergySurplus",
+    "Measurement",
+    "Named",
+    "OverallCoefficient",
+]
+
+
+class AimDirection(StrEnum):
+    """Whether the aim is the most or the least of a coefficient."""
+
+    MOST = "most"
+    LEAST = "least"
+
+
+class EnergySurplus(StrEnum):
+    """What happens to ATP that neither growth nor maintenance needs."""
+
+    LOST = "lost"
+    NONE = "none"
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class OverallCoefficient:
+    """One crossing compound of the overall equation besides the basis.
+
+    Parameters
+    ----------
+    name : str
+        Compound.
+    side : Direction
+        Side on which it is positive.
+    written : WrittenNumber or None
+        Coefficient as written [mol/mol basis]; ``None`` for ``?`` and either-side compounds.
+    span : SourceSpan or None
+        Where it was written.
+    """
+
+    name: str
+    side: Direction
+    written: WrittenNumber | None = None
+    span: SourceSpan | None = field(default=None, compare=False, repr=False)
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Condition:
+    """A measured condition with its standard deviation, in the unit that its name says.
+
+    Parameters
+    ----------
+    value : Fraction
+        Growth rate [1/h], substrate uptake [mol/g/h] or temperature [degC].
+    sd : Fraction or None
+        Standard deviation in the same unit; ``None`` if exact.
+    text : str
+        As written.
+    span : SourceSpan or None
+        Where it was written.
+    """
+
+    value: Fraction
+    sd: Fraction | None
+    text: str
+    span: SourceSpan | None = field(default=None, compare=False, repr=False)
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Measurement:
+    """A measured coefficient.
+
+    Parameters
+    ----------
+    compound : str
+        Which coefficient.
+    value : Fraction
+        Positive on the compound's side [mol/mol basis].
+    sd : Fraction or None
+        Standard deviation; ``None`` if exact [mol/mol basis].
+    text : str
+        As written.
+    label : str
+        Name of the statement.
+    span : SourceSpan or None
+        Where it was written.
+    """
+
+    compound: str
+    value: Fraction
+    sd: Fraction | None
+    text: str
+    label: str
+    span: SourceSpan | None = field(default=None, compare=False, repr=False)
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Demand:
+    """A bound that the answer must keep.
+
+    Parameters
+    ----------
+    compound : str
+        Which coefficient.
+    low, high : Fraction or None
+        Least and most, positive on the compound's side [mol/mol basis].
+    text : str
+        As written.
+    span : SourceSpan or None
+        Where it was written.
+    """
+
+    compound: str
+    low: Fraction | None
+    high: Fraction | None
+    text: str
+    span: SourceSpan | None = field(default=None, compare=False, repr=False)
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Aim:
+    """What is to be most or least: a coefficient, or the surplus of an energy carrier."""
+
+    direction: AimDirection
+    compound: str
+    is_energy: bool = False
+    span: SourceSpan | None = field(default=None, compare=False, repr=False)
+
+    def __str__(self) -> str:
+        return f"{self.direction} {self.compound}"
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Named:
+    """A name with the place where it was written: a knock-out, a strain."""
+
+    name: str
+    span: SourceSpan | None = field(default=None, compare=False, repr=False)
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Case:
+    """One question.
+
+    Parameters
+    ----------
+    title : str
+        As written.
+    network : Network or None
+        The network; ``None`` for a case of elements alone.
+    equation : Equation
+        The overall equation as written.
+    basis : Compound
+        The basis substrate.
+    coefficients : tuple of OverallCoefficient
+        All other crossing compounds, equation first, then those of either side.
+    compounds : tuple of Compound
+        Every compound of the equation, in its order.
+    strain : Named or None
+        Chosen preset.
+    growth_rate, substrate_uptake, temperature : Condition or None
+        Conditions [1/h], [mol/g/h], [degC].
+    measured : tuple of Measurement
+        In written order.
+    demands : tuple of Demand
+        In written order.
+    aim : Aim or None
+        What to look for.
+    energy_surplus : EnergySurplus
+        What happens to spare ATP.
+    energy_surplus_given : bool
+        Whether the file says so, rather than the default.
+    knock_outs : tuple of Named
+        Reactions or groups switched off.
+    parameters : tuple of (str, Fraction)
+        Other values of network parameters.
+    file : str
+        Path as the user gave it.
+    findings : tuple of Finding
+        What was doubtful when the case and its network were read.
+    span : SourceSpan or None
+        Top of the file.
+    """
+
+    title: str
+    network: Network | None
+    equation: Equation
+    basis: Compound
+    coefficients: tuple[OverallCoefficient, ...]
+    compounds: tuple[Compound, ...]
+    strain: Named | None = None
+    growth_rate: Condition | None = None
+    substrate_uptake: Condition | None = None
+    temperature: Condition | None = None
+    measured: tuple[Measurement, ...] = ()
+    demands: tuple[Demand, ...] = ()
+    aim: Aim | None = None
+    energy_surplus: EnergySurplus = EnergySurplus.LOST
+    energy_surplus_given: bool = False
+    knock_outs: tuple[Named, ...] = ()
+    parameters: tuple[tuple[str, Fraction], ...] = ()
+    file: str = field(default="", compare=False)
+    findings: tuple[Finding, ...] = field(default=(), compare=False, repr=False)
+    span: SourceSpan | None = field(default=None, compare=False, repr=False)
+
+    def __repr__(self) -> str:
+        return f"Case({self.title!r}: {self.equation})"
+
+    def coefficient(self, name: str) -> OverallCoefficient | None:
+        """Coefficient of the overall equation by compound."""
+        return next((item for item in self.coefficients if item.name == name), None)
+
+    def compound(self, name: str) -> Compound:
+        """Compound of the overall equation by name.
+
+        Raises
+        ------
+        KeyError
+            If the equation does not list it.
+        """
+        for item in self.compounds:
+            if item.name == name:
+                return item
+        raise KeyError(name)
+
+    def unknowns(self) -> int:
+        """How many coefficients are unknown: ``?``, written decimals, either-side compounds [-]."""
+        return sum(
+            item.written is None or item.written.last_place is not None
+            for item in self.coefficients
+        )
+
+    def with_parameter(self, name: str, value: Fraction) -> Case:
+        """The case with another value of one network parameter."""
+        kept = tuple(pair for pair in self.parameters if pair[0] != name)
+        return replace(self, parameters=(*kept, (name, value)))
+
+    def with_knock_outs(self, *names: str) -> Case:
+        """The case with further reactions or groups switched off."""
+        return replace(self, knock_outs=(*self.knock_outs, *(Named(name=name) for name in names)))

@@ -1,0 +1,1 @@
+"""Fourth floor: linear problems, engines and proof; the only code that touches solvers."""

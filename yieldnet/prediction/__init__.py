@@ -1,0 +1,1 @@
+"""Sixth floor: layers, ladder, coefficients - what a network predicts beside the elements."""

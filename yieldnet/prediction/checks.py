@@ -1,0 +1,158 @@
+"""Doubts about a case that only the solved problems can show."""
+
+from __future__ import annotations
+
+from fractions import Fraction
+from typing import TYPE_CHECKING
+
+from yieldnet.balance.reconciled import pool, reconciled_point
+from yieldnet.balance.statements import GROWTH_OVER_UPTAKE
+from yieldnet.foundation.exact import root_of_square
+from yieldnet.foundation.findings import Findings, Severity
+from yieldnet.model.network import BIOMASS, GROWTH
+from yieldnet.optimum.problem import FREE, Bounds
+from yieldnet.optimum.proof import Status
+from yieldnet.prediction.layers import flux_column, switched_off
+
+if TYPE_CHECKING:
+    from collections.abc import Mapping
+
+    from yieldnet.model.case import Case
+    from yieldnet.optimum.problem import Problem
+    from yieldnet.optimum.proof import Optimiser
+    from yieldnet.optimum.ranges import Range
+    from yieldnet.prediction.layers import Layers
+
+__all__ = ["growth_conditions", "idle_switches", "moved_values", "standing_still"]
+
+
+def growth_conditions(case: Case) -> Findings:
+    """A growth rate that ties nothing together, because biomass is not in the equation."""
+    findings = Findings()
+    if case.growth_rate is not None and case.coefficient(BIOMASS) is None:
+        findings.add(
+            "YN510",
+            "a growth rate is given, and biomass is not in the overall equation",
+            case.growth_rate.span,
+            hint="Add '+ ? biomass' to the right side, or leave the growth rate out.",
+        )
+    return findings
+
+
+def standing_still(case: Case, filled: Mapping[str, Range]) -> Findings:
+    """Maintenance told per biomass formed, in an answer that forms none."""
+    findings = Findings()
+    network = case.network
+    if network is None or network.maintenance is None or case.growth_rate is None:
+        return findings
+    if case.substrate_uptake is not None or BIOMASS not in filled:
+        return findings
+    if filled[BIOMASS].high == 0:
+        findings.add(
+            "YN510",
+            "the answer does not grow, so maintenance per growth rate is zero in it",
+            case.growth_rate.span,
+            hint="Give the substrate uptake: then maintenance is told per substrate.",
+            severity=Severity.WARNING,
+        )
+    return findings
+
+
+def moved_values(optimiser: Optimiser, layers: Layers, point: Mapping[str, Fraction]) -> Findings:
+    """Measured values that the reconciled point had to move, and which layer moved them."""
+    findings = Findings()
+    statements = layers.statements
+    targets = pool(statements.measured)
+    moved = {
+        name: (point[name] - target.value) / root_of_square(target.variance)
+        for name, target in targets.items()
+        if point[name] != target.value
+    }
+    if not moved:
+        return findings
+    by_elements = reconciled_point(optimiser, layers.elements_with_demands, layers.case, statements)
+    for name, distance in moved.items():
+        item = statements.of(name)[0]
+        network_alone = by_elements is not None and by_elements[name] == targets[name].value
+        # The growth relation has its place in 'conditions'; say so, since the row says 'biomass'.
+        label = item.label if item.label == GROWTH_OVER_UPTAKE else f"measured {name}"
+        findings.add(
+            "YN603" if network_alone else "YN604",
+            f"{label} is moved by {float(distance):+.2f} s.d."
+            + (" by the network; the elements alone would not" if network_alone else ""),
+            item.span,
+            left=f"measured {float(targets[name].value):.4g} mol/mol",
+            right=f"reconciled {float(point[name]):.4g} mol/mol",
+            hint="Check the measurement"
+            + (", the network and its parameters." if network_alone else "."),
+            severity=Severity.WARNING if network_alone or abs(distance) > 1 else Severity.NOTE,
+        )
+    return findings
+
+
+def idle_switches(optimiser: Optimiser, layers: Layers) -> Findings:
+    """Knock-outs and strains that cannot change this case: nothing could flow there anyway."""
+    findings = Findings()
+    case, bound = layers.case, layers.bound
+    network = case.network
+    if bound is None or network is None:
+        return findings
+    off = switched_off(case)
+    if not off:
+        return findings
+    ways = {
+        item.name: FREE if item.reversible else Bounds(Fraction(0), None)
+        for item in bound.reactions
+    }
+    everything = layers.problem("pathways").with_columns(
+        {flux_column(name): ways[name] for name in off if name in ways}
+    )
+    preset = network.strain(case.strain.name) if case.strain else None
+    moving: set[str] = set()
+
+    def can_move(name: str) -> bool:
+        return any(
+            _moves(optimiser, everything, member, moving) for member in network.members(name)
+        )
+
+    if preset is not None and not any(can_move(name) for name in preset.off):
+        findings.add(
+            "YN509",
+            f"strain {preset.name!r} cannot change this case: nothing it switches off could run",
+            case.strain.span if case.strain else None,
+            hint="Check substrate and products, or leave the strain out.",
+            severity=Severity.WARNING,
+        )
+    already = {
+        member for name in (preset.off if preset else ()) for member in network.members(name)
+    }
+    for item in case.knock_outs:
+        members = network.members(item.name)
+        if all(member in already for member in members):
+            reason = f"the strain already switches off {item.name!r}"
+        elif item.name == GROWTH or can_move(item.name):
+            continue
+        else:
+            reason = f"{item.name!r} could not run in this case anyway"
+        findings.add(
+            "YN509",
+            f"knock-out without effect: {reason}",
+            item.span,
+            hint="Leave it out, or check that you meant it.",
+            severity=Severity.WARNING,
+        )
+    return findings
+
+
+def _moves(optimiser: Optimiser, problem: Problem, reaction: str, moving: set[str]) -> bool:
+    if reaction in moving:
+        return True
+    column = flux_column(reaction)
+    for maximise in (True, False):
+        answer = optimiser.optimise(problem, {column: Fraction(1)}, maximise)
+        if answer.status is Status.UNBOUNDED or (
+            answer.status is Status.OPTIMAL and answer[column]
+        ):
+            moving.add(reaction)
+            return True
+    return False

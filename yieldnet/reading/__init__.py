@@ -1,0 +1,1 @@
+"""Third floor: files to values with findings; the only code that touches user files."""

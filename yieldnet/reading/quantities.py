@@ -1,0 +1,179 @@
+"""Parser for numbers with errors and units: ``0.11 ± 0.01 g/g``, ``at most 0.65``, ``38 degC``."""
+
+from __future__ import annotations
+
+import re
+from dataclasses import dataclass
+from typing import TYPE_CHECKING
+
+from yieldnet.foundation.exact import NumberTextError, WrittenNumber, read_number
+from yieldnet.foundation.units import UnitError, read_unit
+
+if TYPE_CHECKING:
+    from fractions import Fraction
+
+    from yieldnet.foundation.findings import Findings, SourceSpan
+    from yieldnet.foundation.units import Unit
+
+__all__ = ["Quantity", "QuantityRange", "read_quantity", "read_range"]
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Quantity:
+    """A number with perhaps a standard deviation and a unit, as written.
+
+    Parameters
+    ----------
+    number : WrittenNumber
+        The number, in ``unit``.
+    sd : Fraction or None
+        Standard deviation, in ``unit``; ``None`` if exact.
+    unit : Unit or None
+        ``None`` where none is written.
+    """
+
+    number: WrittenNumber
+    sd: Fraction | None
+    unit: Unit | None
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class QuantityRange:
+    """A least and a most, either of which may be open, with a unit."""
+
+    low: WrittenNumber | None
+    high: WrittenNumber | None
+    unit: Unit | None
+
+
+class _Refused(Exception):
+    def __init__(self, code: str, reason: str, hint: str = "") -> None:
+        self.code, self.reason, self.hint = code, reason, hint
+
+
+def read_quantity(text: str, span: SourceSpan, label: str, findings: Findings) -> Quantity | None:
+    """Number, standard deviation and unit of a text, or ``None`` with a finding.
+
+    Parameters
+    ----------
+    text : str
+        ``0.11 ± 0.01 g/g``; ``+/-`` and ``+-`` stand for ±, and the error may be a percentage of
+        the value.
+    span : SourceSpan
+        Where it stands.
+    label : str
+        Its name in messages.
+    findings : Findings
+        Receives what is wrong.
+
+    Returns
+    -------
+    Quantity or None
+        What was written.
+    """
+    try:
+        words = _words(text)
+        number, rest = _number(words)
+        sd: Fraction | None = None
+        if rest and rest[0] == "±":
+            if len(rest) < 2:
+                raise _Refused("YN201", "nothing stands after ±", "Write a standard deviation.")
+            word, rest = rest[1], rest[2:]
+            percent = word.endswith("%")
+            if not percent and rest and rest[0] == "%":
+                percent, rest = True, rest[1:]
+            sd = _read(word.rstrip("%")).value
+            if percent:
+                sd = abs(number.value) * sd / 100
+            if sd < 0:
+                raise _Refused(
+                    "YN209",
+                    f"the standard deviation {word} is negative",
+                    "Write its size without a sign.",
+                )
+        return Quantity(number=number, sd=sd or None, unit=_unit(rest))
+    except _Refused as refused:
+        findings.add(refused.code, f"{label}: {refused.reason}", span, hint=refused.hint)
+        return None
+
+
+def read_range(text: str, span: SourceSpan, label: str, findings: Findings) -> QuantityRange | None:
+    """Least and most of a text, or ``None`` with a finding.
+
+    Parameters
+    ----------
+    text : str
+        ``at most 0.65``, ``at least 0.1 g/g``, ``0.05 to 0.30``.
+    span : SourceSpan
+        Where it stands.
+    label : str
+        Its name in messages.
+    findings : Findings
+        Receives what is wrong.
+
+    Returns
+    -------
+    QuantityRange or None
+        What was written.
+    """
+    try:
+        words = _words(text)
+        low: WrittenNumber | None = None
+        high: WrittenNumber | None = None
+        if words[:1] == ["at"] and words[1:2] in (["most"], ["least"]):
+            number, rest = _number(words[2:])
+            low, high = (None, number) if words[1] == "most" else (number, None)
+        else:
+            low, rest = _number(words)
+            if rest[:1] != ["to"]:
+                raise _Refused(
+                    "YN201",
+                    f"{text!r} is no bound",
+                    "Write 'at most 0.65', 'at least 0.1 g/g' or '0.05 to 0.30'.",
+                )
+            high, rest = _number(rest[1:])
+            if low.value > high.value:
+                raise _Refused(
+                    "YN511",
+                    f"the low end {low.text} is above the high end {high.text}",
+                    "Exchange them.",
+                )
+        return QuantityRange(low=low, high=high, unit=_unit(rest))
+    except _Refused as refused:
+        findings.add(refused.code, f"{label}: {refused.reason}", span, hint=refused.hint)
+        return None
+
+
+def _words(text: str) -> list[str]:
+    for sign in ("+/-", "+-", "±"):
+        text = text.replace(sign, " ± ")
+    return text.split()
+
+
+def _number(words: list[str]) -> tuple[WrittenNumber, list[str]]:
+    if not words:
+        raise _Refused("YN201", "a number is missing", "Write a number here.")
+    return _read(words[0]), words[1:]
+
+
+def _read(word: str) -> WrittenNumber:
+    try:
+        return read_number(word)
+    except NumberTextError as error:
+        hint = error.hint
+        if not hint and (found := re.match(r"[-+−]?\d*\.?\d+(?=[A-Za-z°])", word)):
+            hint = f"Leave a space before the unit: {found[0]} {word[found.end() :]}."
+        raise _Refused(error.code, error.reason, hint) from None
+
+
+def _unit(words: list[str]) -> Unit | None:
+    if not words:
+        return None
+    if words == ["%"]:
+        raise _Refused(
+            "YN201", "a percentage is not understood here", "Write it as a fraction of 1: 0.05."
+        )
+    try:
+        return read_unit(" ".join(words))
+    except UnitError as error:
+        raise _Refused(error.code, error.reason, error.hint) from None

@@ -1,0 +1,24 @@
+"""Networks that ship with yieldnet, found by name."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+__all__ = ["find_shipped", "models_folder", "shipped_names"]
+
+
+def models_folder() -> Path:
+    """Folder of the shipped networks: inside the installed package, or beside it in a checkout."""
+    package = Path(__file__).resolve().parent.parent
+    installed = package / "models"
+    return installed if installed.is_dir() else package.parent / "models"
+
+
+def shipped_names() -> tuple[str, ...]:
+    """Names of the shipped networks, sorted."""
+    return tuple(sorted(item.stem for item in models_folder().glob("*.yaml")))
+
+
+def find_shipped(name: str) -> Path | None:
+    """Path of a shipped network, or ``None``."""
+    return models_folder() / f"{name}.yaml" if name in shipped_names() else None

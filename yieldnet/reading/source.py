@@ -1,0 +1,130 @@
+"""From a path to text: encoding, line ends and indentation checked before YAML sees them."""
+
+from __future__ import annotations
+
+import re
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+from yieldnet.foundation.findings import SourceSpan, near
+
+if TYPE_CHECKING:
+    from yieldnet.foundation.findings import Findings
+
+__all__ = ["MAX_BYTES", "read_text"]
+
+MAX_BYTES = 1_000_000
+"""Largest file that is read: a network of 60 reactions has about 10,000 bytes [byte]."""
+
+_MARKS = {
+    b"\xef\xbb\xbf": "UTF-8 with a byte order mark",
+    b"\xff\xfe": "UTF-16",
+    b"\xfe\xff": "UTF-16",
+}
+
+
+def read_text(path: str, findings: Findings) -> str | None:
+    """Text of a file, or ``None`` with findings that say why not.
+
+    Parameters
+    ----------
+    path : str
+        Path as the user gave it.
+    findings : Findings
+        Receives what is wrong.
+
+    Returns
+    -------
+    str or None
+        The text, UTF-8 with line feeds.
+    """
+    top = SourceSpan(file=path, line=1, column=1)
+    place = Path(path)
+    try:
+        if place.is_dir():
+            findings.add(
+                "YN101", f"{path!r} is a directory", top, hint="Name the YAML file inside it."
+            )
+            return None
+        size = place.stat().st_size
+        if size > MAX_BYTES:
+            findings.add(
+                "YN108",
+                f"the file has {size:,} bytes",
+                top,
+                left=f"limit {MAX_BYTES:,} bytes",
+                hint="A case or a network is a short text: is this the right file?",
+            )
+            return None
+        raw = place.read_bytes()
+    except (OSError, ValueError) as error:
+        reason = getattr(error, "strerror", None) or "the name cannot be used"
+        findings.add(
+            "YN101", f"cannot read {path!r}: {reason.lower()}", top, hint=_neighbours(place)
+        )
+        return None
+    return _decode(raw, path, top, findings)
+
+
+def _neighbours(place: Path) -> str:
+    try:
+        names = [item.name for item in place.parent.iterdir()]
+    except (OSError, ValueError):
+        return "Check the path."
+    return near(place.name, names) or "Check the path."
+
+
+def _decode(raw: bytes, path: str, top: SourceSpan, findings: Findings) -> str | None:
+    for mark, encoding in _MARKS.items():
+        if raw.startswith(mark):
+            findings.add(
+                "YN103",
+                f"the file is saved as {encoding}",
+                top,
+                hint="Save it as UTF-8 without a byte order mark.",
+            )
+            return None
+    if b"\x00" in raw:
+        findings.add(
+            "YN103",
+            "the file holds zero bytes, so it is UTF-16 or not text at all",
+            _at(raw, raw.index(b"\x00"), path),
+            hint="Save it as UTF-8.",
+        )
+        return None
+    try:
+        text = raw.decode("utf-8")
+    except UnicodeDecodeError as error:
+        guess = raw[error.start : error.start + 1].decode("cp1252", "replace")
+        findings.add(
+            "YN103",
+            f"byte 0x{raw[error.start]:02x} is not UTF-8 (a Windows encoding has {guess!r} there)",
+            _at(raw, error.start, path),
+            hint="Save the file as UTF-8.",
+        )
+        return None
+    if not text.strip():
+        findings.add("YN102", "the file is empty", top, hint="Start from a shipped example.")
+        return None
+    if "\r" in text:
+        findings.add(
+            "YN106",
+            "the lines end with carriage returns",
+            _at(raw, raw.index(b"\r"), path),
+            hint="Save the file with line feeds alone (Unix line ends).",
+        )
+        return None
+    tabs = [
+        SourceSpan(file=path, line=number, column=found.end())
+        for number, line in enumerate(text.split("\n"), 1)
+        if (found := re.match(r" *\t", line)) and line.strip()
+    ]
+    for span in tabs[:10]:
+        findings.add("YN105", "the line is indented with a tab", span, hint="Use spaces.")
+    return None if tabs else text
+
+
+def _at(raw: bytes, offset: int, path: str) -> SourceSpan:
+    before = raw[:offset]
+    line_start = before.rfind(b"\n") + 1
+    return SourceSpan(file=path, line=before.count(b"\n") + 1, column=offset - line_start + 1)

@@ -1,0 +1,86 @@
+"""How numbers are written for people; the only place where they are rounded."""
+
+from __future__ import annotations
+
+from fractions import Fraction
+from typing import TYPE_CHECKING
+
+if TYPE_CHECKING:
+    from yieldnet.optimum.ranges import Range
+
+__all__ = ["DIGITS", "figure", "percent", "range_text", "signed"]
+
+DIGITS = 3
+"""Significant digits of a number in a text: no cultivation is known better [-]."""
+
+
+def figure(value: Fraction | float | None) -> str:
+    """Number in three significant digits, whole numbers plain.
+
+    Parameters
+    ----------
+    value : Fraction, float or None
+        The number; ``None`` stands for no bound.
+
+    Returns
+    -------
+    str
+        Text without a power of ten.
+
+    Examples
+    --------
+    >>> figure(Fraction(12, 7)), figure(Fraction(2)), figure(Fraction(1, 2000)), figure(None)
+    ('1.71', '2', '0.000500', 'unbounded')
+    """
+    if value is None:
+        return "unbounded"
+    number = float(value)
+    if number == round(number) and abs(number) < 10**6:
+        return str(round(number))
+    text = f"{number:#.{DIGITS}g}"
+    if "e" in text:
+        from decimal import Decimal
+
+        text = format(Decimal(text), "f")
+    return text.removesuffix(".")
+
+
+def signed(value: float) -> str:
+    """Number with its sign and two decimals, for standard deviations.
+
+    Examples
+    --------
+    >>> signed(0.5)
+    '+0.50'
+    """
+    return f"{value:+.2f}"
+
+
+def percent(value: Fraction | None) -> str:
+    """Fraction of 1 as a whole percentage; empty for none.
+
+    Examples
+    --------
+    >>> percent(Fraction(4, 7)), percent(None)
+    ('57 %', '')
+    """
+    return "" if value is None else f"{float(100 * value):.0f} %"
+
+
+def range_text(value: Range | None) -> str:
+    """Range as ``low…high``, one number where the ends agree.
+
+    Examples
+    --------
+    >>> from yieldnet.optimum.ranges import Range
+    >>> range_text(Range(Fraction(0), Fraction(12, 7)))
+    '0…1.71'
+    """
+    if value is None:
+        return ""
+    if value.low is None and value.high is None:
+        return "unbounded"
+    if value.single:
+        return figure(value.low)
+    low = "unbounded" if value.low is None else figure(value.low)
+    return f"{low}…{figure(value.high)}"

@@ -1,0 +1,403 @@
+"""One view of a prediction: labels, numbers, units and notes, decided once for every output."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from fractions import Fraction
+from typing import TYPE_CHECKING
+
+from yieldnet.foundation.units import UnitError, read_unit, yield_factor
+from yieldnet.model.network import Direction
+from yieldnet.optimum.ranges import Range
+from yieldnet.prediction.layers import switched_off
+from yieldnet.report.figures import figure, percent, range_text, signed
+
+if TYPE_CHECKING:
+    from yieldnet.prediction.result import CoefficientAnswer, Prediction
+
+__all__ = ["UNITS", "PredictionView", "Table", "equation_text", "view_of"]
+
+UNITS = ("mol/mol", "g/g", "C-mol/C-mol")
+"""Units in which a text can tell yields."""
+_SIDE_WORD = {
+    Direction.CONSUMED: "taken up",
+    Direction.PRODUCED: "given off",
+    Direction.EITHER: "either way",
+}
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Table:
+    """A table of texts.
+
+    Parameters
+    ----------
+    title : str
+        Heading with the unit.
+    columns : tuple of str
+        Column headings.
+    rows : tuple of tuple of str
+        Cells.
+    note : str
+        Line under the table.
+    """
+
+    title: str
+    columns: tuple[str, ...]
+    rows: tuple[tuple[str, ...], ...]
+    note: str = ""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class PredictionView:
+    """Everything a text shows of a prediction, in its order.
+
+    Parameters
+    ----------
+    title, setting : str
+        Heading and the line under it.
+    headline : str
+        The answer in one line.
+    equation : str
+        Filled-in overall equation.
+    tables : tuple of Table
+        Coefficients, equation, ladder, freedom; empty ones left out.
+    bars : tuple of float
+        Length of each ladder bar as a fraction of the first; empty without a ladder [-].
+    remarks : tuple of str
+        Recoveries, respiratory quotient, carbon dioxide.
+    findings : tuple of (str, str)
+        Severity and text of each finding.
+    assumptions : tuple of (str, str, str)
+        Text, value with unit, source.
+    """
+
+    title: str
+    setting: str
+    headline: str
+    equation: str
+    tables: tuple[Table, ...]
+    bars: tuple[float, ...]
+    remarks: tuple[str, ...]
+    findings: tuple[tuple[str, str], ...]
+    assumptions: tuple[tuple[str, str, str], ...]
+
+
+def view_of(result: Prediction, unit: str = "mol/mol") -> PredictionView:
+    """View of a prediction.
+
+    Parameters
+    ----------
+    result : Prediction
+        The answer.
+    unit : {"mol/mol", "g/g", "C-mol/C-mol"}
+        Unit of the coefficient table.
+
+    Returns
+    -------
+    PredictionView
+        Texts in the order of showing.
+    """
+    tables = [_coefficients(result, unit)] if result.coefficients else []
+    if result.terms:
+        tables.append(_filled(result))
+    if result.ladder:
+        tables.append(_ladder(result))
+    if result.freedom:
+        tables.append(_freedom(result))
+    return PredictionView(
+        title=result.case.title,
+        setting=_setting(result),
+        headline=_headline(result),
+        equation=equation_text(result),
+        tables=tuple(tables),
+        bars=_bars(result),
+        remarks=_remarks(result),
+        findings=tuple((str(item.severity), str(item)) for item in result.findings),
+        assumptions=tuple(
+            (
+                item.text,
+                "" if item.value is None else f"{figure(item.value)} {item.unit}".strip(),
+                " ".join(item.source.split()),
+            )
+            for item in result.assumptions
+        ),
+    )
+
+
+def _setting(result: Prediction) -> str:
+    case = result.case
+    parts = [f"per mol {case.basis.name}"]
+    if case.network is not None and _has_network(result):
+        parts.append(f"network: {case.network.title}")
+        if case.strain is not None:
+            parts.append(f"strain: {case.strain.name}")
+        if case.knock_outs:
+            parts.append("knocked out: " + ", ".join(item.name for item in case.knock_outs))
+    elif not _has_network(result):
+        parts.append("elements alone")
+    return "; ".join(parts)
+
+
+def _has_network(result: Prediction) -> bool:
+    return any(item.layer == "pathways" for item in result.freedom)
+
+
+def _headline(result: Prediction) -> str:
+    case, aim = result.case, result.aim
+    if result.outcome != "solved":
+        reasons = [item.reason for item in result.ladder if item.reason]
+        words = f": {reasons[0]}" if reasons and result.outcome == "unbounded" else ""
+        return f"{result.outcome}{words}"
+    if aim is None or aim.value is None:
+        return "no aim: every coefficient is told by its range"
+    unit = "mol/mol"
+    text = f"{case.aim}: {figure(aim.value)} {unit}"
+    if aim.within_bands is not None and aim.within_bands != aim.value:
+        text += f" ({figure(aim.within_bands)} within 2 s.d.)"
+    if case.aim is not None and not case.aim.is_energy:
+        item = result.coefficient(aim.compound)
+        grams = _factor(item, "g/g")
+        if grams is not None:
+            text += f" = {figure(aim.value * grams)} g/g"
+        if item.percent is not None:
+            text += f"; {percent(item.percent)} of the last rung over the cell"
+        if item.set_aside and aim.value:
+            value = item.measurements[0].value
+            text += f"; measured {figure(value)} is {percent(value / aim.value)} of it"
+    return text
+
+
+def _factor(item: CoefficientAnswer, unit: str) -> Fraction | None:
+    """Amount of ``unit`` in one mol/mol; ``None`` where the unit means nothing."""
+    try:
+        return 1 / yield_factor(read_unit(unit), item.weight, item.basis_weight)
+    except UnitError:
+        return None
+
+
+def _scaled(value: Range | None, factor: Fraction) -> Range | None:
+    if value is None:
+        return None
+    return Range(
+        None if value.low is None else value.low * factor,
+        None if value.high is None else value.high * factor,
+    )
+
+
+def _coefficients(result: Prediction, unit: str) -> Table:
+    rows: list[tuple[str, ...]] = []
+    with_network = _has_network(result)
+    for item in result.coefficients:
+        factor = _factor(item, unit)
+        if factor is None:
+            rows.append((item.compound, f"no {unit}", *("",) * (4 if with_network else 2)))
+            continue
+        measured = ""
+        if item.reconciled is not None:
+            mean, sd = item.reconciled.mean * factor, item.reconciled.sd
+            measured = figure(mean) + (f" ± {figure(sd * factor)}" if sd else " exact")
+        elif item.measurements:
+            measured = f"({figure(item.measurements[0].value * factor)})"
+        cells = [item.compound, measured, range_text(_scaled(item.elements, factor))]
+        if with_network:
+            cells.append(range_text(_scaled(item.network, factor)))
+            cells.append(percent(item.percent).removesuffix(" %"))
+        cells.append(str(item.status))
+        rows.append(tuple(cells))
+    network_columns = ("network", "%") if with_network else ()
+    columns = ("", "measured", "elements", *network_columns, "status")
+    note = ""
+    if any(item.side is Direction.EITHER for item in result.coefficients):
+        note = "Either-side compounds: given off is positive, taken up negative."
+    if any(item.set_aside for item in result.coefficients):
+        note += " (In brackets: set aside, since it is the aim.)"
+    return Table(
+        title=f"Coefficients, {unit}, ranges within two standard deviations",
+        columns=columns,
+        rows=tuple(rows),
+        note=note.strip(),
+    )
+
+
+def _filled(result: Prediction) -> Table:
+    carbon = {
+        name: share
+        for recovery in result.recoveries
+        if recovery.quantity == "carbon"
+        for name, share in recovery.shares
+    }
+    answers = {item.compound: item for item in result.coefficients}
+    rows = []
+    for term in result.terms:
+        item = answers.get(term.compound)
+        factor = Fraction(1) if item is None else _factor(item, "g/g")
+        grams = "" if factor is None else range_text(_scaled(term.range, factor))
+        zero = term.range.single and term.range.low == 0
+        side = "none" if zero else _SIDE_WORD[term.side]
+        rows.append(
+            (
+                term.compound,
+                side,
+                range_text(term.range),
+                grams,
+                percent(carbon.get(term.compound)).removesuffix(" %"),
+            )
+        )
+    place = "at the aim" if result.aim and result.aim.value is not None else "as far as known"
+    return Table(
+        title=f"Filled in {place}, at the reconciled point",
+        columns=("", "", "mol/mol", "g/g", "% of carbon"),
+        rows=tuple(rows),
+    )
+
+
+def _ladder(result: Prediction) -> Table:
+    rows = tuple(
+        (
+            item.rung,
+            _rung_words(result, item.rung),
+            item.reason if item.value is None else figure(item.value),
+            "" if item.loss is None else figure(item.loss),
+        )
+        for item in result.ladder
+    )
+    return Table(
+        title=f"Ladder: {result.case.aim}, mol/mol",
+        columns=("rung", "what it adds", "best", "costs"),
+        rows=rows,
+        note="'elements' holds the total electron balance already; 'redox' keeps carriers apart."
+        if any(item.rung == "redox" for item in result.ladder)
+        else "",
+    )
+
+
+def _rung_words(result: Prediction, rung: str) -> str:
+    case, network = result.case, result.case.network
+    if rung == "elements":
+        return (
+            "elements and charge over the cell" if _charged(result) else ("elements over the cell")
+        )
+    if rung == "measured":
+        names = [item.compound for item in result.coefficients if item.reconciled is not None]
+        return "values of " + _listed(names) if names else "measured values"
+    if rung == "demands":
+        return "bounds on " + _listed([item.compound for item in case.demands])
+    if network is None:
+        return ""
+    carriers: dict[str, list[str]] = {"energy": [], "redox": []}
+    for item in network.carriers:
+        carriers[str(item.kind)].append(item.name)
+    if rung == "pathways":
+        growth = 0 if network.growth is None else 1
+        total = len(network.reactions) + growth
+        off = len(switched_off(case))
+        return f"{total - off} of {total} reactions" if off else f"{total} reactions"
+    if rung == "redox":
+        return _listed(carriers["redox"]) + (" apart" if len(carriers["redox"]) > 1 else "")
+    if rung == "energy":
+        return " and ".join(carriers["energy"]) + " made covers use"
+    return f"{' and '.join(carriers['energy'])} for staying alive"
+
+
+def _listed(names: list[str]) -> str:
+    """First names, and how many more there are."""
+    return ", ".join(names) if len(names) <= 3 else ", ".join(names[:2]) + f" +{len(names) - 2}"
+
+
+def _charged(result: Prediction) -> bool:
+    return any(item.formula.charge for item in result.case.compounds)
+
+
+def _bars(result: Prediction) -> tuple[float, ...]:
+    values = [item.value for item in result.ladder]
+    longest = max((abs(value) for value in values if value is not None), default=Fraction(0))
+    if not longest:
+        return ()
+    return tuple(0.0 if value is None else float(abs(value) / longest) for value in values)
+
+
+def _freedom(result: Prediction) -> Table:
+    return Table(
+        title="Degrees of freedom",
+        columns=("rung", "unknowns", "rank", "free"),
+        rows=tuple(
+            (item.layer, str(item.unknowns), str(item.rank), str(item.free))
+            for item in result.freedom
+        ),
+    )
+
+
+def _remarks(result: Prediction) -> tuple[str, ...]:
+    found = []
+    basis = result.case.basis.name
+    for item in result.recoveries:
+        words = "Carbon" if item.quantity == "carbon" else "Available electrons"
+        parts = []
+        if item.total is not None:
+            parts.append(f"{percent(item.total)} found again in the filled-in equation")
+        if item.measured is not None:
+            parts.append(f"{percent(item.measured)} of the {basis} in measured products alone")
+        if parts:
+            found.append(f"{words}: " + "; ".join(parts) + ".")
+    if result.respiratory_quotient is not None:
+        found.append(f"RQ: {figure(result.respiratory_quotient)} mol/mol.")
+    net = result.net_carbon_dioxide
+    if net is not None:
+        found.append(f"Net carbon dioxide, mol/mol: {_net_words(net)}.")
+    need = result.carbon_dioxide_need
+    if need is not None:
+        amount = Range(need.least, need.most)
+        without = "nothing" if need.without is None else f"{figure(need.without)} mol/mol"
+        found.append(
+            f"The best value takes up {range_text(amount)} mol carbon dioxide net;"
+            f" without net uptake the best is {without}."
+        )
+    moved = [
+        f"{item.compound} {signed(item.reconciled.moved_sd)}"
+        for item in result.coefficients
+        if item.reconciled is not None and item.reconciled.moved_sd
+    ]
+    if moved:
+        found.append("Reconciled, moved by s.d.: " + ", ".join(moved) + ".")
+    return tuple(found)
+
+
+def _net_words(value: Range) -> str:
+    if value.single and value.low is not None:
+        side = "taken up" if value.low < 0 else "given off"
+        return f"{figure(abs(value.low))} {side}"
+    if value.high is not None and value.high <= 0:
+        return f"{range_text(value.turned())} taken up"
+    if value.low is not None and value.low >= 0:
+        return f"{range_text(value)} given off"
+    low = "unbounded" if value.low is None else figure(-value.low)
+    return f"{low} taken up … {figure(value.high)} given off"
+
+
+def equation_text(result: Prediction) -> str:
+    """Filled-in overall equation; a bracket where a coefficient is not unique.
+
+    Parameters
+    ----------
+    result : Prediction
+        The answer.
+
+    Returns
+    -------
+    str
+        The equation, empty if there is none; terms that are zero are left out.
+    """
+    sides: dict[bool, list[str]] = {True: [], False: []}
+    for term in result.terms:
+        value = term.range
+        if value.single and value.low == 0:
+            continue
+        if value.single:
+            text = term.compound if value.low == 1 else f"{figure(value.low)} {term.compound}"
+        else:
+            text = f"[{range_text(value)}] {term.compound}"
+        sides[term.side is Direction.CONSUMED].append(text)
+    if not result.terms:
+        return ""
+    return " + ".join(sides[True]) + " -> " + (" + ".join(sides[False]) or "nothing")

@@ -1,0 +1,181 @@
+"""The verbs as functions, with the names and options of the command line."""
+
+from __future__ import annotations
+
+import os
+from typing import TYPE_CHECKING
+
+from yieldnet.foundation.errors import InputError
+
+if TYPE_CHECKING:
+    from yieldnet.audit.audit import AuditResult
+    from yieldnet.model.case import Case
+    from yieldnet.model.network import Network
+    from yieldnet.prediction.result import Prediction
+
+    Path = str | os.PathLike[str]
+
+__all__ = ["audit", "balance", "predict", "read_case", "read_network"]
+
+
+def read_case(path: Path) -> Case:
+    """Case of a file, with its network.
+
+    Parameters
+    ----------
+    path : str or path
+        Path of the case file.
+
+    Returns
+    -------
+    Case
+        The question as written, every number exact.
+
+    Raises
+    ------
+    InputError
+        If anything in the file or its network is wrong; carries all findings.
+
+    Examples
+    --------
+    >>> read_case("examples/lysine/case.yaml").basis.name
+    'glucose'
+    """
+    from yieldnet.reading.case_file import load_case
+
+    case, findings = load_case(os.fspath(path))
+    if case is None:
+        raise InputError(findings.sorted())
+    return case
+
+
+def read_network(path: Path) -> Network:
+    """Network of a file, or a shipped network by its name.
+
+    Parameters
+    ----------
+    path : str or path
+        Path of the network file, or the name of a shipped network.
+
+    Returns
+    -------
+    Network
+        The network as written.
+
+    Raises
+    ------
+    InputError
+        If anything in the file is wrong; carries all findings.
+
+    Examples
+    --------
+    >>> read_network("lysine-coryneform").title
+    'Coryneform lysine former on glucose'
+    """
+    from yieldnet.reading.network_file import load_network
+    from yieldnet.reading.shipped import find_shipped
+
+    name = os.fspath(path)
+    network, findings = load_network(str(find_shipped(name) or name))
+    if network is None:
+        raise InputError(findings.sorted())
+    return network
+
+
+def predict(case: Case | Path, *, engine: str = "glpk") -> Prediction:
+    """Yield coefficients of a case by elements and by network, side by side.
+
+    Parameters
+    ----------
+    case : Case or path
+        The question, or the path of its file.
+    engine : {"glpk", "optlang"}
+        Solver whose answer is proven in fractions.
+
+    Returns
+    -------
+    Prediction
+        Ranges, ladder and filled-in equation [mol/mol basis]; infeasible and unbounded are
+        answers too.
+
+    Raises
+    ------
+    InputError
+        If the files must be refused; carries all findings.
+
+    Examples
+    --------
+    >>> round(predict("examples/lysine/case.yaml").best_yield_mol_per_mol(), 3)
+    0.811
+    """
+    from yieldnet.prediction.predict import predict_case
+
+    return predict_case(_as_case(case), engine)
+
+
+def balance(case: Case | Path, *, engine: str = "glpk") -> Prediction:
+    """Yield coefficients of a case by elements alone.
+
+    Parameters
+    ----------
+    case : Case or path
+        The question, or the path of its file; its network is left out.
+    engine : {"glpk", "optlang"}
+        Solver whose answer is proven in fractions.
+
+    Returns
+    -------
+    Prediction
+        Ranges and ladder without the network [mol/mol basis].
+
+    Raises
+    ------
+    InputError
+        If the files must be refused; carries all findings.
+
+    Examples
+    --------
+    >>> round(balance("examples/lysine/case.yaml").best_yield_mol_per_mol(), 3)
+    0.857
+    """
+    from yieldnet.prediction.predict import balance_case
+
+    return balance_case(_as_case(case), engine)
+
+
+def audit(network: Network | Path, *, engine: str = "glpk") -> AuditResult:
+    """Everything wrong or doubtful in a network.
+
+    Parameters
+    ----------
+    network : Network or path
+        The network, the path of its file, or the name of a shipped network.
+    engine : {"glpk", "optlang"}
+        Solver for the rules that need a linear problem.
+
+    Returns
+    -------
+    AuditResult
+        The findings of every rule.
+
+    Raises
+    ------
+    InputError
+        If the file cannot be read as a network; carries all findings.
+
+    Examples
+    --------
+    >>> audit("lysine-coryneform").clean
+    True
+    """
+    from yieldnet.audit.audit import audit_network
+    from yieldnet.model.network import Network
+
+    written = network if isinstance(network, Network) else read_network(network)
+    return audit_network(written, engine)
+
+
+def _as_case(case: Case | Path) -> Case:
+    from yieldnet.model.case import Case
+
+    return case if isinstance(case, Case) else read_case(case)
