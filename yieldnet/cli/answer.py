@@ -29,11 +29,12 @@ def show(run: Callable[[], Prediction], unit: str, as_csv: bool, as_json: bool) 
 
         click.echo(as_text(prediction_form(result)))
     elif as_csv:
-        from yieldnet.report.view import view_of
-
-        tables = [item for item in view_of(result, unit).tables if "Coefficients" in item.title]
-        for table in tables:
-            write_csv(("compound", *table.columns[1:]), list(table.rows))
+        records = result.coefficient_records()
+        header = tuple(records[0]) if records else ()
+        rows = [
+            tuple("" if cell is None else str(cell) for cell in row.values()) for row in records
+        ]
+        write_csv(header, rows)
     else:
         from yieldnet.report.text import console, print_prediction
         from yieldnet.report.view import view_of

@@ -43,6 +43,7 @@ def command(code: str | None, as_json: bool) -> None:
     if code is None:
         for item in chosen:
             out.print(f"{item.code}  {item.title}")
+        out.print("'yieldnet explain CODE' says why it matters and what to do.", style="dim")
         return
     for item in chosen:
         out.print(f"{item.code}  {item.title}", style="bold")

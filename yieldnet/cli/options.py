@@ -23,7 +23,9 @@ __all__ = [
 json_option = click.option(
     "--json", "as_json", is_flag=True, help="Print JSON (format 1) instead of text."
 )
-csv_option = click.option("--csv", "as_csv", is_flag=True, help="Print the table as CSV.")
+csv_option = click.option(
+    "--csv", "as_csv", is_flag=True, help="Print the table as CSV, in mol/mol."
+)
 engine_option = click.option(
     "--engine",
     type=click.Choice(["glpk", "optlang"]),

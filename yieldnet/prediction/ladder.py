@@ -157,4 +157,4 @@ def runaway_words(answer: Answer) -> str:
     ]
     if not parts:
         parts = [name for name, amount in answer.direction if amount][:4]
-    return "unbounded: " + ", ".join(parts) + " can grow together without limit"
+    return ", ".join(parts) + " can grow together without limit"

@@ -315,6 +315,40 @@ class Prediction:
                 return item
         raise KeyError(compound)
 
+    def coefficient_records(self) -> tuple[dict[str, str | float | None], ...]:
+        """Coefficients as records of plain numbers in mol/mol basis, for tables and CSV.
+
+        Returns
+        -------
+        tuple of dict
+            One a coefficient; ``None`` where there is no value or no bound [mol/mol].
+        """
+
+        def number(value: Fraction | None) -> float | None:
+            return None if value is None else float(value)
+
+        found: list[dict[str, str | float | None]] = []
+        for item in self.coefficients:
+            known = item.reconciled
+            record: dict[str, str | float | None] = {
+                "compound": item.compound,
+                "side": str(item.side),
+                "measured": float(known.mean) if known else None,
+                "s.d.": number(known.sd) if known else None,
+                "reconciled": float(known.value) if known else None,
+            }
+            for name, value in (
+                ("elements", item.elements),
+                ("network", item.network),
+                ("at aim", item.at_aim),
+            ):
+                record[f"{name} low"] = number(value.low) if value else None
+                record[f"{name} high"] = number(value.high) if value else None
+            record["percent"] = None if item.percent is None else 100 * float(item.percent)
+            record["status"] = str(item.status)
+            found.append(record)
+        return tuple(found)
+
     def coefficient_table(self) -> pandas.DataFrame:
         """Coefficients as a table, numbers in mol/mol basis.
 
@@ -326,32 +360,7 @@ class Prediction:
         """
         import pandas
 
-        def ends(name: str, value: Range | None) -> dict[str, float | None]:
-            low = value.low if value else None
-            high = value.high if value else None
-            return {
-                f"{name} low": None if low is None else float(low),
-                f"{name} high": None if high is None else float(high),
-            }
-
-        rows = []
-        for item in self.coefficients:
-            known = item.reconciled
-            rows.append(
-                {
-                    "compound": item.compound,
-                    "side": str(item.side),
-                    "measured": float(known.mean) if known else None,
-                    "s.d.": float(known.sd) if known and known.sd else None,
-                    "reconciled": float(known.value) if known else None,
-                    **ends("elements", item.elements),
-                    **ends("network", item.network),
-                    **ends("at aim", item.at_aim),
-                    "percent": None if item.percent is None else 100 * float(item.percent),
-                    "status": str(item.status),
-                }
-            )
-        return pandas.DataFrame(rows).set_index("compound")
+        return pandas.DataFrame(list(self.coefficient_records())).set_index("compound")
 
     def ladder_table(self) -> pandas.DataFrame:
         """Ladder as a table, numbers in mol/mol basis.

@@ -17,7 +17,7 @@ __all__ = ["WIDTH", "console", "print_findings", "print_prediction", "print_tabl
 
 WIDTH = 80
 """Widest line [characters]."""
-_BAR = 20
+_BAR = 16
 _STYLE = {"error": "bold red", "warning": "yellow", "note": "dim"}
 
 
@@ -75,13 +75,16 @@ def print_table(out: Console, table: Table, bars: tuple[float, ...] = ()) -> Non
         max(len(cell) for cell in (heading, *(row[j] for row in table.rows)))
         for j, heading in enumerate(table.columns)
     ]
+    # The widest column gives way where the table would not fit.
+    widest = widths.index(max(widths))
+    widths[widest] -= max(0, sum(widths) + 2 * len(widths) - 1 - WIDTH)
     right = [
         bool(heading) and all(_is_figure(row[j]) for row in table.rows)
         for j, heading in enumerate(table.columns)
     ]
 
     def line(cells: tuple[str, ...]) -> str:
-        return "  " + "  ".join(
+        return " " + "  ".join(
             cell.rjust(width) if to_right else cell.ljust(width)
             for cell, width, to_right in zip(cells, widths, right, strict=True)
         )
@@ -89,10 +92,14 @@ def print_table(out: Console, table: Table, bars: tuple[float, ...] = ()) -> Non
     if any(table.columns):
         out.print(line(table.columns).rstrip(), style="dim")
     for i, row in enumerate(table.rows):
-        text = line(row)
+        pieces = textwrap.wrap(row[widest], widths[widest]) or [""]
+        text = line((*row[:widest], pieces[0], *row[widest + 1 :]))
         if bars:
             text += "  " + "▪" * round(_BAR * bars[i])
         out.print(text.rstrip())
+        for piece in pieces[1:]:
+            blank = ("",) * len(row)
+            out.print(line((*blank[:widest], piece, *blank[widest + 1 :])).rstrip())
     if table.note:
         out.print(wrapped(table.note, "  "), style="dim")
 

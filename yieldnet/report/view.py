@@ -6,6 +6,7 @@ from dataclasses import dataclass
 from fractions import Fraction
 from typing import TYPE_CHECKING
 
+from yieldnet.balance.statements import statements_of
 from yieldnet.foundation.units import UnitError, read_unit, yield_factor
 from yieldnet.model.network import Direction
 from yieldnet.optimum.ranges import Range
@@ -103,7 +104,7 @@ def view_of(result: Prediction, unit: str = "mol/mol") -> PredictionView:
         tables.append(_filled(result))
     if result.ladder:
         tables.append(_ladder(result))
-    if result.freedom:
+    elif result.freedom:
         tables.append(_freedom(result))
     return PredictionView(
         title=result.case.title,
@@ -146,9 +147,9 @@ def _has_network(result: Prediction) -> bool:
 def _headline(result: Prediction) -> str:
     case, aim = result.case, result.aim
     if result.outcome != "solved":
-        reasons = [item.reason for item in result.ladder if item.reason]
-        words = f": {reasons[0]}" if reasons and result.outcome == "unbounded" else ""
-        return f"{result.outcome}{words}"
+        codes = {"YN601": "infeasible", "YN602": "unbounded"}
+        reasons = [item.message for item in result.findings if item.code in codes]
+        return reasons[0] if reasons else str(result.outcome)
     if aim is None or aim.value is None:
         return "no aim: every coefficient is told by its range"
     unit = "mol/mol"
@@ -161,7 +162,7 @@ def _headline(result: Prediction) -> str:
         if grams is not None:
             text += f" = {figure(aim.value * grams)} g/g"
         if item.percent is not None:
-            text += f"; {percent(item.percent)} of the last rung over the cell"
+            text += f"; {percent(item.percent)} of the best without the network"
         if item.set_aside and aim.value:
             value = item.measurements[0].value
             text += f"; measured {figure(value)} is {percent(value / aim.value)} of it"
@@ -212,8 +213,9 @@ def _coefficients(result: Prediction, unit: str) -> Table:
         note = "Either-side compounds: given off is positive, taken up negative."
     if any(item.set_aside for item in result.coefficients):
         note += " (In brackets: set aside, since it is the aim.)"
+    banded = any(item.sd for item in statements_of(result.case).measured)
     return Table(
-        title=f"Coefficients, {unit}, ranges within two standard deviations",
+        title=f"Coefficients, {unit}" + (", ranges within two standard deviations" * banded),
         columns=columns,
         rows=tuple(rows),
         note=note.strip(),
@@ -244,31 +246,40 @@ def _filled(result: Prediction) -> Table:
                 percent(carbon.get(term.compound)).removesuffix(" %"),
             )
         )
+    measured = statements_of(result.case).measured
     place = "at the aim" if result.aim and result.aim.value is not None else "as far as known"
     return Table(
-        title=f"Filled in {place}, at the reconciled point",
+        title=f"Filled in {place}" + (", at the reconciled point" * bool(measured)),
         columns=("", "", "mol/mol", "g/g", "% of carbon"),
         rows=tuple(rows),
     )
 
 
 def _ladder(result: Prediction) -> Table:
+    free = {item.layer: str(item.free) for item in result.freedom}
     rows = tuple(
         (
             item.rung,
             _rung_words(result, item.rung),
-            item.reason if item.value is None else figure(item.value),
+            free[item.rung],
+            "none" if item.value is None else figure(item.value),
             "" if item.loss is None else figure(item.loss),
         )
         for item in result.ladder
     )
+    reasons: dict[str, list[str]] = {}
+    for item in result.ladder:
+        if item.reason:
+            reasons.setdefault(item.reason, []).append(item.rung)
+    notes = [f"{', '.join(rungs)}: {reason}." for reason, rungs in reasons.items()]
+    notes.append(f"free: how many of the {result.case.unknowns()} unknowns are left.")
+    if "redox" in free:
+        notes.append("The total electron balance is already in 'elements'.")
     return Table(
         title=f"Ladder: {result.case.aim}, mol/mol",
-        columns=("rung", "what it adds", "best", "costs"),
+        columns=("rung", "what it adds", "free", "best", "costs"),
         rows=rows,
-        note="'elements' holds the total electron balance already; 'redox' keeps carriers apart."
-        if any(item.rung == "redox" for item in result.ladder)
-        else "",
+        note=" ".join(notes),
     )
 
 
@@ -279,8 +290,7 @@ def _rung_words(result: Prediction, rung: str) -> str:
             "elements and charge over the cell" if _charged(result) else ("elements over the cell")
         )
     if rung == "measured":
-        names = [item.compound for item in result.coefficients if item.reconciled is not None]
-        return "values of " + _listed(names) if names else "measured values"
+        return "values of " + _listed(list(statements_of(case).measured_compounds()))
     if rung == "demands":
         return "bounds on " + _listed([item.compound for item in case.demands])
     if network is None:
