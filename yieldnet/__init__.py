@@ -5,15 +5,16 @@ The public functions are loaded when they are first used, so that importing the 
 
 from __future__ import annotations
 
+import sys
+from types import ModuleType
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
-    from yieldnet.foundation.errors import InputError, ReportError, SolveError, YieldnetError
+    from yieldnet.foundation.errors import InputError, SolveError, YieldnetError
     from yieldnet.verbs import audit, balance, predict, read_case, read_network
 
 __all__ = [
     "InputError",
-    "ReportError",
     "SolveError",
     "YieldnetError",
     "audit",
@@ -24,7 +25,7 @@ __all__ = [
 ]
 __version__ = "0.1.0"
 
-_ERRORS = frozenset({"InputError", "ReportError", "SolveError", "YieldnetError"})
+_ERRORS = frozenset({"InputError", "SolveError", "YieldnetError"})
 
 
 def __getattr__(name: str) -> object:
@@ -34,6 +35,21 @@ def __getattr__(name: str) -> object:
 
     home = "yieldnet.foundation.errors" if name in _ERRORS else "yieldnet.verbs"
     return getattr(import_module(home), name)
+
+
+class _Package(ModuleType):
+    """Package in which a verb keeps its name though a folder has the same.
+
+    Importing ``yieldnet.balance.statements`` makes the import system bind the folder ``balance`` as
+    an attribute here, which would hide the function ``balance``.
+    """
+
+    def __setattr__(self, name: str, value: object) -> None:
+        if not (isinstance(value, ModuleType) and name in __all__):
+            super().__setattr__(name, value)
+
+
+sys.modules[__name__].__class__ = _Package
 
 
 def __dir__() -> list[str]:

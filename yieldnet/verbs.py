@@ -8,6 +8,8 @@ from typing import TYPE_CHECKING
 from yieldnet.foundation.errors import InputError
 
 if TYPE_CHECKING:
+    from collections.abc import Sequence
+
     from yieldnet.audit.audit import AuditResult
     from yieldnet.model.case import Case
     from yieldnet.model.network import Network
@@ -82,7 +84,14 @@ def read_network(path: Path) -> Network:
     return network
 
 
-def predict(case: Case | Path, *, engine: str = "glpk") -> Prediction:
+def predict(
+    case: Case | Path,
+    *,
+    engine: str = "glpk",
+    fluxes: bool = False,
+    proof: bool = False,
+    order: Sequence[str] = (),
+) -> Prediction:
     """Yield coefficients of a case by elements and by network, side by side.
 
     Parameters
@@ -91,6 +100,12 @@ def predict(case: Case | Path, *, engine: str = "glpk") -> Prediction:
         The question, or the path of its file.
     engine : {"glpk", "optlang"}
         Solver whose answer is proven in fractions.
+    fluxes : bool
+        Whether the answer holds the fluxes at the aim.
+    proof : bool
+        Whether the answer holds the proof on paper.
+    order : sequence of str
+        Another order of the rungs below ``elements``, for a second ladder; empty for none.
 
     Returns
     -------
@@ -108,9 +123,10 @@ def predict(case: Case | Path, *, engine: str = "glpk") -> Prediction:
     >>> round(predict("examples/lysine/case.yaml").best_yield_mol_per_mol(), 3)
     0.811
     """
-    from yieldnet.prediction.predict import predict_case
+    from yieldnet.prediction.predict import Wanted, predict_case
 
-    return predict_case(_as_case(case), engine)
+    wanted = Wanted(fluxes=fluxes, proof=proof, order=tuple(order))
+    return predict_case(_as_case(case), engine, wanted)
 
 
 def balance(case: Case | Path, *, engine: str = "glpk") -> Prediction:

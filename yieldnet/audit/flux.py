@@ -15,11 +15,37 @@ if TYPE_CHECKING:
     from yieldnet.optimum.problem import Problem
     from yieldnet.optimum.proof import Optimiser
 
-__all__ = ["blocked_reactions", "energy_from_nothing"]
+__all__ = ["blocked_reactions", "closed_network", "energy_from_nothing", "energy_loop"]
 
 _ZERO = Fraction(0)
 _ONE = Fraction(1)
 _SHUT = Bounds(_ZERO, _ZERO)
+
+
+def closed_network(bound: BoundNetwork) -> Problem:
+    """Steady state of a network with nothing crossing the cell boundary."""
+    return _steady_state(bound, crossing_open=False, largest=None)
+
+
+def energy_loop(optimiser: Optimiser, closed: Problem, carrier: str) -> dict[str, Fraction] | None:
+    """Fluxes that make an energy carrier from nothing, or ``None`` if there are none.
+
+    Parameters
+    ----------
+    optimiser : Optimiser
+        Solves and proves.
+    closed : Problem
+        Steady state with nothing crossing.
+    carrier : str
+        Energy carrier.
+
+    Returns
+    -------
+    dict of str to Fraction or None
+        Direction in which the surplus grows without limit, by column.
+    """
+    answer = optimiser.optimise(closed, {f"surplus {carrier}": _ONE})
+    return dict(answer.direction) if answer.status is Status.UNBOUNDED else None
 
 
 def _steady_state(bound: BoundNetwork, crossing_open: bool, largest: Fraction | None) -> Problem:
@@ -53,14 +79,13 @@ def _steady_state(bound: BoundNetwork, crossing_open: bool, largest: Fraction | 
 def energy_from_nothing(bound: BoundNetwork, optimiser: Optimiser) -> Findings:
     """Loops that make an energy carrier with nothing crossing the cell boundary."""
     findings = Findings()
-    problem = _steady_state(bound, crossing_open=False, largest=None)
+    problem = closed_network(bound)
     for item in bound.network.carriers:
         if item.kind is not CarrierKind.ENERGY:
             continue
-        answer = optimiser.optimise(problem, {f"surplus {item.name}": _ONE})
-        if answer.status is not Status.UNBOUNDED:
+        fluxes = energy_loop(optimiser, problem, item.name)
+        if fluxes is None:
             continue
-        fluxes = dict(answer.direction)
         made = fluxes.get(f"surplus {item.name}", _ONE)
         loop = [
             f"{name}{' backwards' if fluxes[name] < 0 else ''}"

@@ -20,7 +20,7 @@ from yieldnet.balance.statements import yield_column
 from yieldnet.foundation.exact import eliminate
 
 if TYPE_CHECKING:
-    from collections.abc import Iterable, Sequence
+    from collections.abc import Iterable
 
     from yieldnet.model.case import Case
     from yieldnet.optimum.problem import Problem
@@ -40,11 +40,15 @@ class Freedom:
         Unknown coefficients [-].
     free : int
         Dimension of the coefficient vectors that the equalities so far allow [-].
+    free_in_fact : int or None
+        The same, counting equalities that follow from signs alone; ``None`` without a point
+        [-].
     """
 
     layer: str
     unknowns: int
     free: int
+    free_in_fact: int | None = None
 
     @property
     def rank(self) -> int:
@@ -69,24 +73,25 @@ class CoefficientEquations:
 
     def free(self, known: Iterable[str] = ()) -> int:
         """Dimension that is left when some coefficients are known [-]."""
-        return len(self.names) - eliminate(self._with(known), len(self.names)).rank
+        return len(self.names) - eliminate(self.with_known(known), len(self.names)).rank
 
     def calculable(self, known: Iterable[str] = ()) -> frozenset[str]:
         """Coefficients that follow when some are known, those included."""
-        form = eliminate(self._with(known), len(self.names))
+        form = eliminate(self.with_known(known), len(self.names))
         return frozenset(
             self.names[pivot]
             for pivot, row in zip(form.pivots, form.rows, strict=True)
             if not any(entry for j, entry in enumerate(row) if j != pivot)
         )
 
-    def _with(self, known: Iterable[str]) -> list[Sequence[Fraction]]:
-        units = []
+    def with_known(self, known: Iterable[str]) -> list[tuple[Fraction, ...]]:
+        """The equations, with one more for each coefficient that is known."""
+        units: list[tuple[Fraction, ...]] = []
         for name in known:
             if name in self.names:
                 unit = [Fraction(0)] * len(self.names)
                 unit[self.names.index(name)] = Fraction(1)
-                units.append(unit)
+                units.append(tuple(unit))
         return [*self.rows, *units]
 
 

@@ -15,6 +15,8 @@ from yieldnet.optimum.problem import FREE, Bounds, ProblemBuilder
 from yieldnet.optimum.proof import Status
 
 if TYPE_CHECKING:
+    from collections.abc import Mapping
+
     from yieldnet.model.case import Case
     from yieldnet.optimum.problem import Problem
     from yieldnet.optimum.proof import Optimiser
@@ -23,9 +25,12 @@ __all__ = ["missing_compounds"]
 
 _USUAL = ("carbon dioxide", "water", "ammonia", "oxygen")
 _ZERO = Fraction(0)
+_Elements = dict[str, dict[str, Fraction]]
 
 
-def missing_compounds(case: Case, optimiser: Optimiser) -> Findings:
+def missing_compounds(
+    case: Case, optimiser: Optimiser, growth_residual: Mapping[str, Fraction]
+) -> Findings:
     """Findings for coefficients that the elements force to zero, or that make closure impossible.
 
     Parameters
@@ -34,6 +39,8 @@ def missing_compounds(case: Case, optimiser: Optimiser) -> Findings:
         The case.
     optimiser : Optimiser
         Solves and proves.
+    growth_residual : mapping of str to Fraction
+        Elements that one mol of growth makes from nothing within its written digits.
 
     Returns
     -------
@@ -48,9 +55,10 @@ def missing_compounds(case: Case, optimiser: Optimiser) -> Findings:
     """
     findings = Findings()
     candidates = _candidates(case)
-    bare = _problem(case, [])
+    matrix = element_matrix(case, growth_residual)
+    bare = _problem(case, matrix, [])
     if optimiser.optimise(bare, {}).status is Status.INFEASIBLE:
-        mends = _mends(case, optimiser, candidates, None)
+        mends = _mends(case, matrix, optimiser, candidates, None)
         if mends:
             findings.add(
                 "YN507",
@@ -66,7 +74,7 @@ def missing_compounds(case: Case, optimiser: Optimiser) -> Findings:
         answer = optimiser.optimise(bare, {column: Fraction(1)})
         if answer.status is not Status.OPTIMAL or answer.value > 0:
             continue
-        mends = _mends(case, optimiser, candidates, item.name)
+        mends = _mends(case, matrix, optimiser, candidates, item.name)
         if mends:
             findings.add(
                 "YN507",
@@ -98,10 +106,10 @@ def _candidates(case: Case) -> list[tuple[Compound, Direction]]:
     ]
 
 
-def _problem(case: Case, added: list[tuple[Compound, Direction]]) -> Problem:
+def _problem(case: Case, elements: _Elements, added: list[tuple[Compound, Direction]]) -> Problem:
     builder = ProblemBuilder()
     add_coefficient_columns(builder, case)
-    matrix = element_matrix(case)
+    matrix = {element: dict(line) for element, line in elements.items()}
     bounds = {
         Direction.CONSUMED: Bounds(None, _ZERO),
         Direction.PRODUCED: Bounds(_ZERO, None),
@@ -122,9 +130,13 @@ def _problem(case: Case, added: list[tuple[Compound, Direction]]) -> Problem:
 
 
 def _helps(
-    case: Case, optimiser: Optimiser, added: list[tuple[Compound, Direction]], name: str | None
+    case: Case,
+    elements: _Elements,
+    optimiser: Optimiser,
+    added: list[tuple[Compound, Direction]],
+    name: str | None,
 ) -> bool:
-    problem = _problem(case, added)
+    problem = _problem(case, elements, added)
     if name is None:
         return optimiser.optimise(problem, {}).status is not Status.INFEASIBLE
     answer = optimiser.optimise(problem, {yield_column(name): Fraction(1)})
@@ -135,20 +147,21 @@ def _helps(
 
 def _mends(
     case: Case,
+    elements: _Elements,
     optimiser: Optimiser,
     candidates: list[tuple[Compound, Direction]],
     name: str | None,
 ) -> list[tuple[Compound, Direction]]:
     """Fewest candidates that help: one, else all less those not needed."""
     for candidate in candidates:
-        if _helps(case, optimiser, [candidate], name):
+        if _helps(case, elements, optimiser, [candidate], name):
             return [candidate]
     kept = list(candidates)
-    if not kept or not _helps(case, optimiser, kept, name):
+    if not kept or not _helps(case, elements, optimiser, kept, name):
         return []
     for candidate in reversed(candidates):
         fewer = [item for item in kept if item is not candidate]
-        if _helps(case, optimiser, fewer, name):
+        if _helps(case, elements, optimiser, fewer, name):
             kept = fewer
     return kept
 

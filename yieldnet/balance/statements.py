@@ -11,33 +11,31 @@ from fractions import Fraction
 from typing import TYPE_CHECKING
 
 from yieldnet.foundation.exact import root_of_square
+from yieldnet.model.case import BAND, Measurement
 from yieldnet.model.network import BIOMASS, Direction
 from yieldnet.optimum.problem import FREE, Bounds
 
 if TYPE_CHECKING:
-    from collections.abc import Mapping, Sequence
+    from collections.abc import Mapping
 
-    from yieldnet.model.case import Case, Demand, Measurement, OverallCoefficient
+    from yieldnet.model.case import Case, Demand, OverallCoefficient
     from yieldnet.optimum.problem import Problem, ProblemBuilder
 
 __all__ = [
-    "BAND",
     "GROWTH_OVER_UPTAKE",
     "Statements",
     "add_coefficient_columns",
     "add_statement_rows",
     "band",
+    "kind_of",
     "side_sign",
     "statements_of",
     "with_bands",
     "with_demands",
     "with_point",
-    "without_statements",
     "yield_column",
 ]
 
-BAND = 2
-"""Half width of a measured value's band in standard deviations [-]."""
 GROWTH_OVER_UPTAKE = "growth rate / substrate uptake"
 """Name of the biomass coefficient that follows from growth rate and substrate uptake."""
 
@@ -81,8 +79,6 @@ def statements_of(case: Case) -> Statements:
     deviations is that interval. Growth rate over substrate uptake gives g biomass per mol basis;
     relative variances add.
     """
-    from yieldnet.model.case import Measurement
-
     found: list[Measurement] = list(case.measured)
     for item in case.coefficients:
         if item.written is not None and item.written.last_place is not None:
@@ -108,8 +104,6 @@ def statements_of(case: Case) -> Statements:
 
 
 def _growth_over_uptake(case: Case) -> Measurement | None:
-    from yieldnet.model.case import Measurement
-
     rate, uptake = case.growth_rate, case.substrate_uptake
     if rate is None or uptake is None or case.coefficient(BIOMASS) is None:
         return None
@@ -126,6 +120,11 @@ def _growth_over_uptake(case: Case) -> Measurement | None:
         label=GROWTH_OVER_UPTAKE,
         span=rate.span,
     )
+
+
+def kind_of(item: Measurement) -> str:
+    """``written`` for a decimal of the equation, else ``measured``."""
+    return "written" if item.label.startswith("written ") else "measured"
 
 
 def yield_column(compound: str) -> str:
@@ -197,8 +196,3 @@ def with_point(problem: Problem, statements: Statements, point: Mapping[str, Fra
 def with_demands(problem: Problem, statements: Statements) -> Problem:
     """The problem with the demands."""
     return problem.with_rows(_demand_bounds(statements))
-
-
-def without_statements(problem: Problem, labels: Sequence[str]) -> Problem:
-    """The problem with some statements given up."""
-    return problem.with_rows(dict.fromkeys(labels, FREE))

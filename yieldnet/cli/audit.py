@@ -19,12 +19,13 @@ def command(network: str, engine: str, as_json: bool) -> None:
     Example: yieldnet audit facultative-succinate
     """
     from yieldnet.foundation.errors import YieldnetError
+    from yieldnet.report.json_form import unread_audit_form
     from yieldnet.verbs import audit
 
     try:
         result = audit(network, engine=engine)
     except YieldnetError as error:
-        refuse(error, as_json)
+        refuse(error, as_json, unread_audit_form)
     if as_json:
         from yieldnet.report.json_form import as_text, audit_form
 

@@ -3,12 +3,15 @@
 from __future__ import annotations
 
 import sys
-from typing import TYPE_CHECKING, NoReturn
+from typing import TYPE_CHECKING, Any, NoReturn
 
 import click
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
     from yieldnet.foundation.errors import YieldnetError
+    from yieldnet.foundation.findings import Finding
 
 __all__ = [
     "csv_option",
@@ -23,9 +26,7 @@ __all__ = [
 json_option = click.option(
     "--json", "as_json", is_flag=True, help="Print JSON (format 1) instead of text."
 )
-csv_option = click.option(
-    "--csv", "as_csv", is_flag=True, help="Print the table as CSV, in mol/mol."
-)
+csv_option = click.option("--csv", "as_csv", is_flag=True, help="Print the table as CSV.")
 engine_option = click.option(
     "--engine",
     type=click.Choice(["glpk", "optlang"]),
@@ -42,21 +43,27 @@ unit_option = click.option(
 )
 
 
-def refuse(error: YieldnetError, as_json: bool) -> NoReturn:
+def refuse(
+    error: YieldnetError,
+    as_json: bool,
+    form: Callable[[tuple[Finding, ...]], dict[str, Any]] | None = None,
+) -> NoReturn:
     """Show why there is no answer, and end with exit code 1."""
     from yieldnet.foundation.errors import InputError
+    from yieldnet.foundation.findings import Finding
+    from yieldnet.report.json_form import as_text, refused_form
 
-    if not isinstance(error, InputError):
-        raise click.ClickException(str(error))
+    if isinstance(error, InputError):
+        findings = error.findings
+    else:
+        findings = (Finding(code="YN605", message=str(error), hint="Take a smaller network."),)
     if as_json:
-        from yieldnet.report.json_form import as_text, refused_form
-
-        click.echo(as_text(refused_form(error.findings)))
+        click.echo(as_text(refused_form(findings) if form is None else form(findings)))
     else:
         from yieldnet.report.text import console, print_findings
 
-        print_findings(console(stderr=True), error.findings)
-        count = len(error.findings)
+        print_findings(console(stderr=True), findings)
+        count = len(findings)
         click.echo(f"{count} finding{'s' if count != 1 else ''}; no answer.", err=True)
     sys.exit(1)
 

@@ -13,7 +13,7 @@ if TYPE_CHECKING:
 
     from yieldnet.foundation.findings import Finding
 
-__all__ = ["InputError", "ReportError", "SolveError", "YieldnetError"]
+__all__ = ["InputError", "SolveError", "YieldnetError"]
 
 
 class YieldnetError(Exception):
@@ -36,7 +36,3 @@ class InputError(YieldnetError, ValueError):
 
 class SolveError(YieldnetError):
     """A number was asked of an answer that has none, or no engine can solve the problem."""
-
-
-class ReportError(YieldnetError):
-    """An output cannot be laid out or written."""

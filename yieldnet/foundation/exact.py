@@ -22,7 +22,6 @@ __all__ = [
     "WrittenNumber",
     "decimal_text",
     "eliminate",
-    "fraction_text",
     "read_number",
     "root_of_square",
 ]
@@ -150,11 +149,6 @@ def _why_not(text: str) -> NumberTextError:
             "YN201", f"{text!r} is a percentage", "Write it as a fraction of 1, such as 0.05."
         )
     return NumberTextError("YN201", f"{text!r} is not a number")
-
-
-def fraction_text(value: Fraction) -> str:
-    """Fraction as text, ``12/7`` or ``3``."""
-    return str(value)
 
 
 def decimal_text(value: Fraction) -> str | None:

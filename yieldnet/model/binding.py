@@ -90,6 +90,11 @@ class BoundNetwork:
                 total[element] = total.get(element, Fraction(0)) + amount * atoms
         return {element: value for element, value in total.items() if value}
 
+    def growth_residual(self) -> dict[str, Fraction]:
+        """Residual of growth, which may keep one within its written digits."""
+        growth = self.reaction(GROWTH)
+        return self.residual(growth) if growth is not None else {}
+
     def reaction(self, name: str) -> BoundReaction | None:
         """Reaction by name."""
         return next((item for item in self.reactions if item.name == name), None)

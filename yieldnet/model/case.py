@@ -4,17 +4,17 @@ from __future__ import annotations
 
 from dataclasses import dataclass, field, replace
 from enum import StrEnum
+from fractions import Fraction
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
-    from fractions import Fraction
-
     from yieldnet.foundation.exact import WrittenNumber
     from yieldnet.foundation.findings import Finding, SourceSpan
     from yieldnet.model.equation import Equation
     from yieldnet.model.network import Compound, Direction, Network
 
 __all__ = [
+    "BAND",
     "Aim",
     "AimDirection",
     "Case",
@@ -25,6 +25,10 @@ __all__ = [
     "Named",
     "OverallCoefficient",
 ]
+
+
+BAND = 2
+"""Half width of a measured value's band in standard deviations [-]."""
 
 
 class AimDirection(StrEnum):
@@ -101,6 +105,10 @@ class Measurement:
         As written.
     label : str
         Name of the statement.
+    unit : str
+        Unit in which it was written.
+    factor : Fraction
+        mol/mol basis in one ``unit`` [mol/mol].
     span : SourceSpan or None
         Where it was written.
     """
@@ -110,6 +118,8 @@ class Measurement:
     sd: Fraction | None
     text: str
     label: str
+    unit: str = "mol/mol"
+    factor: Fraction = Fraction(1)
     span: SourceSpan | None = field(default=None, compare=False, repr=False)
 
 
@@ -125,6 +135,10 @@ class Demand:
         Least and most, positive on the compound's side [mol/mol basis].
     text : str
         As written.
+    unit : str
+        Unit in which it was written.
+    factor : Fraction
+        mol/mol basis in one ``unit`` [mol/mol].
     span : SourceSpan or None
         Where it was written.
     """
@@ -133,6 +147,8 @@ class Demand:
     low: Fraction | None
     high: Fraction | None
     text: str
+    unit: str = "mol/mol"
+    factor: Fraction = Fraction(1)
     span: SourceSpan | None = field(default=None, compare=False, repr=False)
 
 
@@ -163,7 +179,7 @@ class Case:
 
     Parameters
     ----------
-    title : str
+    title, about : str
         As written.
     network : Network or None
         The network; ``None`` for a case of elements alone.
@@ -207,6 +223,7 @@ class Case:
     basis: Compound
     coefficients: tuple[OverallCoefficient, ...]
     compounds: tuple[Compound, ...]
+    about: str = ""
     strain: Named | None = None
     growth_rate: Condition | None = None
     substrate_uptake: Condition | None = None
@@ -250,10 +267,27 @@ class Case:
         )
 
     def with_parameter(self, name: str, value: Fraction) -> Case:
-        """The case with another value of one network parameter."""
+        """The case with another value of one network parameter.
+
+        Raises
+        ------
+        KeyError
+            If the network has no such parameter.
+        """
+        if self.network is None or all(item.name != name for item in self.network.parameters):
+            raise KeyError(name)
         kept = tuple(pair for pair in self.parameters if pair[0] != name)
         return replace(self, parameters=(*kept, (name, value)))
 
     def with_knock_outs(self, *names: str) -> Case:
-        """The case with further reactions or groups switched off."""
+        """The case with further reactions or groups switched off.
+
+        Raises
+        ------
+        KeyError
+            If a name is neither a reaction nor a group of the network.
+        """
+        for name in names:
+            if self.network is None or not self.network.members(name):
+                raise KeyError(name)
         return replace(self, knock_outs=(*self.knock_outs, *(Named(name=name) for name in names)))

@@ -89,6 +89,7 @@ class Carrier:
     name: str
     kind: CarrierKind
     formula: Formula
+    about: str = ""
     span: SourceSpan | None = field(default=None, compare=False, repr=False)
 
 

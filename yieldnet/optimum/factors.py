@@ -42,13 +42,18 @@ class Factors:
                 users[j].add(i)
         self._steps: list[tuple[int, int, Rational, list[tuple[int, Rational]]]] = []
         self._lower: list[tuple[int, int, Rational]] = []
+        singles = [i for i, row in work.items() if len(row) == 1]
         while work:
-            # A column with one user needs no elimination; else the sparsest row.
-            p = min(work, key=lambda i: (len(work[i]), i))
+            # A row with one entry fills nothing in; only without one is the sparsest looked for.
+            p = -1
+            while singles and p not in work:
+                p = singles.pop()
+            if p not in work:
+                p = min(work, key=lambda i: len(work[i]))
             row = work.pop(p)
             if not row:
                 raise SingularBasis
-            q = min(row, key=lambda j: (len(users[j]), j))
+            q = min(row, key=lambda j: len(users[j])) if len(row) > 1 else next(iter(row))
             pivot = row.pop(q)
             others = list(row.items())
             for j in row:
@@ -67,6 +72,8 @@ class Factors:
                     elif old is not None:
                         del target[j]
                         users[j].discard(i)
+                if len(target) == 1:
+                    singles.append(i)
             self._steps.append((p, q, pivot, others))
 
     def solve(self, right: Sequence[Rational]) -> list[Rational]:

@@ -74,12 +74,13 @@ class GlpkSession:
         if problem.matrix is not self._matrix:
             raise ValueError("the problem has another matrix than the one loaded")
         glpk, handle = self._glpk, self._handle
+        # Unchanged columns and rows are the same objects, so most of this is one comparison each.
         for j, column in enumerate(problem.columns):
-            if column.bounds != self._columns[j]:
+            if column.bounds is not self._columns[j]:
                 glpk.glp_set_col_bnds(handle, j + 1, *self._kind(column.bounds))
                 self._columns[j] = column.bounds
         for i, row in enumerate(problem.rows):
-            if row.bounds != self._rows[i]:
+            if row.bounds is not self._rows[i]:
                 glpk.glp_set_row_bnds(handle, i + 1, *self._kind(row.bounds))
                 self._rows[i] = row.bounds
         for j in self._objective:

@@ -33,6 +33,7 @@ __all__ = ["MAX_PIVOTS", "Answer", "Optimiser", "Status"]
 MAX_PIVOTS = 5_000
 """Most exact pivots before a problem is given up as too large to prove [-]."""
 Rational = Any
+_ZERO = Fraction(0)
 
 
 class Status(StrEnum):
@@ -103,6 +104,39 @@ class Answer:
         if self.status is not Status.OPTIMAL:
             raise SolveError(f"the problem is {self.status}: it has no values")
 
+    def stays_best(self, changed: Problem) -> bool:
+        """Whether this point is still optimal once some bounds have changed, by the same duals.
+
+        Parameters
+        ----------
+        changed : Problem
+            The problem with other bounds.
+
+        Returns
+        -------
+        bool
+            ``True`` proves it; ``False`` says nothing.
+        """
+        self._need_optimal()
+        sign = 1 if self.maximise else -1
+        for j, (old, new) in enumerate(zip(self.problem.columns, changed.columns, strict=True)):
+            if old is not new and not _rests(
+                self.primal[j], sign * self.reduced_costs[j], new.bounds
+            ):
+                return False
+        for i, (before, after) in enumerate(zip(self.problem.rows, changed.rows, strict=True)):
+            if before is not after and not _rests(
+                self.activity(i), sign * self.duals[i], after.bounds
+            ):
+                return False
+        return True
+
+    def activity(self, row: int) -> Fraction:
+        """Sum of a row at the optimum."""
+        return sum(
+            (value * self.primal[j] for j, value in self.problem.matrix.rows[row]), Fraction(0)
+        )
+
     def optimal_face(self) -> Problem:
         """The problem cut down to its optimal points.
 
@@ -124,6 +158,18 @@ class Answer:
                 end = row.bounds.high if upper else row.bounds.low
                 rows[row.name] = Bounds(end, end)
         return self.problem.with_columns(columns).with_rows(rows)
+
+
+def _rests(value: Fraction, pull: Fraction, bounds: Bounds) -> bool:
+    """Whether a variable may rest at a value: inside its bounds and not pulled off them."""
+    low, high = bounds.low, bounds.high
+    if (low is not None and value < low) or (high is not None and value > high):
+        return False
+    if pull > 0:
+        return high is not None and value == high
+    if pull < 0:
+        return low is not None and value == low
+    return True
 
 
 class Optimiser:
@@ -195,21 +241,23 @@ class _Exact:
                 self.columns[j][i] = value
         self.zero = fmpq(0)
         self.factors: dict[tuple[int, ...], tuple[list[int], list[int], Factors]] = {}
-        self.converted: dict[Fraction, Rational] = {}
+        self.seen: list[Bounds | None] = [None] * (matrix.columns + len(matrix.rows))
+        self.low: list[Rational | None] = [None] * len(self.seen)
+        self.high: list[Rational | None] = [None] * len(self.seen)
 
     def _in(self, value: Fraction) -> Rational:
         return self.fmpq(value.numerator, value.denominator)
 
-    def _convert(self, value: Fraction | None) -> Rational | None:
-        if value is None:
-            return None
-        found = self.converted.get(value)
-        if found is None:
-            found = self.converted[value] = self._in(value)
-        return found
+    def _take_bounds(self, problem: Problem) -> None:
+        """Convert the bounds that are other objects than at the last call."""
+        for j, bounds in enumerate(problem.all_bounds()):
+            if bounds is not self.seen[j]:
+                self.seen[j] = bounds
+                self.low[j] = None if bounds.low is None else self._in(bounds.low)
+                self.high[j] = None if bounds.high is None else self._in(bounds.high)
 
     def _out(self, value: Rational) -> Fraction:
-        return Fraction(int(value.p), int(value.q)) if value else Fraction(0)
+        return Fraction(int(value.p), int(value.q)) if value else _ZERO
 
     def _factor(self, basic: tuple[int, ...]) -> tuple[list[int], list[int], Factors]:
         """Basic columns, rows that are not basic, and the factors of the block between them."""
@@ -236,15 +284,13 @@ class _Exact:
         objective: tuple[tuple[str, Fraction], ...],
         maximise: bool,
     ) -> Answer:
-        bounds = problem.all_bounds()
-        low = [self._convert(item.low) for item in bounds]
-        high = [self._convert(item.high) for item in bounds]
+        self._take_bounds(problem)
         try:
             self._factor(start.basic)
-            run = _Run(self, low, high, start)
+            run = _Run(self, self.low, self.high, start)
         except SingularBasis:
             slack = tuple(range(self.size, self.size + len(self.rows)))
-            run = _Run(self, low, high, Basis(slack, frozenset()))
+            run = _Run(self, self.low, self.high, Basis(slack, frozenset()))
         sign = -1 if maximise else 1
         target = {j: self._in(value) * sign for j, value in costs.items()}
 
@@ -268,13 +314,14 @@ class _Exact:
                 if runaway.get(j)
             )
             return answer(Status.UNBOUNDED, direction=direction)
-        duals = run.duals
-        reduced = run.reduced
+        out = self._out
         return answer(
             Status.OPTIMAL,
-            primal=tuple(self._out(run.values[j]) for j in range(self.size)),
-            reduced_costs=tuple(self._out(reduced[j] * sign) for j in range(self.size)),
-            duals=tuple(self._out(value * sign) for value in duals),
+            primal=tuple(out(value) for value in run.values[: self.size]),
+            reduced_costs=tuple(
+                out(value * sign) if value else _ZERO for value in run.reduced[: self.size]
+            ),
+            duals=tuple(out(value * sign) if value else _ZERO for value in run.duals),
         )
 
 

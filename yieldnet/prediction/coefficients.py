@@ -9,7 +9,8 @@ from typing import TYPE_CHECKING
 from yieldnet.balance.freedom import Freedom, coefficient_equations
 from yieldnet.balance.reconciled import pool
 from yieldnet.balance.statements import side_sign, with_bands, with_point, yield_column
-from yieldnet.foundation.exact import root_of_square
+from yieldnet.foundation.exact import eliminate, root_of_square
+from yieldnet.optimum.hull import affine_hull
 from yieldnet.optimum.ranges import Range, column_ranges
 from yieldnet.prediction.result import CoefficientAnswer, CoefficientStatus, Reconciled
 
@@ -29,6 +30,7 @@ __all__ = [
     "find_ranges",
     "freedom_of",
     "layer_equations",
+    "movements",
     "own_side",
 ]
 
@@ -148,17 +150,85 @@ def layer_equations(layers: Layers) -> dict[str, CoefficientEquations]:
 
 
 def freedom_of(
-    layers: Layers, equations: Mapping[str, CoefficientEquations]
+    optimiser: Optimiser,
+    layers: Layers,
+    equations: Mapping[str, CoefficientEquations],
+    point: Mapping[str, Fraction] | None,
 ) -> tuple[Freedom, ...]:
     """Degrees of freedom of each rung; measured coefficients are known from their rung on."""
     measured = layers.statements.measured_compounds()
-    return tuple(
-        Freedom(
-            layer=rung,
-            unknowns=layers.case.unknowns(),
-            free=equations[rung].free(() if rung == "elements" else measured),
+    found = []
+    for rung in layers.rungs:
+        known = () if rung == "elements" else measured
+        in_fact = None
+        if point is not None:
+            problem = layers.problem(rung)
+            if rung != "elements":
+                problem = with_point(problem, layers.statements, point)
+            names = equations[rung].names
+            hull = affine_hull(
+                optimiser,
+                problem,
+                [yield_column(name) for name in names],
+                equations[rung].with_known(known),
+            )
+            in_fact = None if hull is None else hull.dimension
+        found.append(
+            Freedom(
+                layer=rung,
+                unknowns=layers.case.unknowns(),
+                free=equations[rung].free(known),
+                free_in_fact=in_fact,
+            )
         )
-        for rung in layers.rungs
+    return tuple(found)
+
+
+def movements(
+    optimiser: Optimiser,
+    layers: Layers,
+    ranges: AllRanges,
+    point: Mapping[str, Fraction],
+    best: Answer | None,
+) -> tuple[tuple[tuple[str, Fraction], ...], ...]:
+    """Directions in which coefficients that are not unique move together.
+
+    Parameters
+    ----------
+    optimiser : Optimiser
+        Solves and proves.
+    layers : Layers
+        The problems.
+    ranges : AllRanges
+        Says which coefficients are not unique.
+    point : mapping of str to Fraction
+        Reconciled point.
+    best : Answer or None
+        Proven optimum of the last rung.
+
+    Returns
+    -------
+    tuple of tuple of (str, Fraction)
+        Independent directions, positive on the declared side; empty if all are unique.
+    """
+    loose = [item for item in layers.case.coefficients if not ranges.filled[item.name].single]
+    if not loose:
+        return ()
+    problem = (
+        best.optimal_face()
+        if best is not None
+        else with_point(layers.final, layers.statements, point)
+    )
+    hull = affine_hull(optimiser, problem, [yield_column(item.name) for item in loose])
+    assert hull is not None
+    form = eliminate(hull.directions, len(loose))
+    return tuple(
+        tuple(
+            (item.name, side_sign(item.side) * move)
+            for item, move in zip(loose, row, strict=True)
+            if move
+        )
+        for row in form.rows
     )
 
 

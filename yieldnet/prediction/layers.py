@@ -20,7 +20,7 @@ from yieldnet.balance.statements import (
 )
 from yieldnet.model.binding import composition
 from yieldnet.model.case import EnergySurplus
-from yieldnet.model.network import BIOMASS, GROWTH, CarrierKind
+from yieldnet.model.network import BIOMASS, CarrierKind
 from yieldnet.optimum.problem import FREE, Bounds, ProblemBuilder
 
 if TYPE_CHECKING:
@@ -39,6 +39,7 @@ __all__ = [
     "exchange_column",
     "flux_column",
     "maintenance_row",
+    "off_entries",
     "surplus_column",
     "switched_off",
 ]
@@ -67,14 +68,21 @@ def exchange_column(carrier: str) -> str:
 
 def switched_off(case: Case) -> dict[str, str]:
     """Reactions that strain and knock-outs switch off, with the entry that names each first."""
-    network = case.network
-    assert network is not None
-    preset = network.strain(case.strain.name) if case.strain else None
     off: dict[str, str] = {}
-    for name in (*(preset.off if preset else ()), *(item.name for item in case.knock_outs)):
-        for member in network.members(name):
+    for name, members in off_entries(case).items():
+        for member in members:
             off.setdefault(member, name)
     return off
+
+
+def off_entries(case: Case) -> dict[str, tuple[str, ...]]:
+    """Entries of strain and knock-outs, each with the reactions it switches off."""
+    network = case.network
+    if network is None:
+        return {}
+    preset = network.strain(case.strain.name) if case.strain else None
+    names = (*(preset.off if preset else ()), *(item.name for item in case.knock_outs))
+    return {name: network.members(name) for name in names}
 
 
 @dataclass(frozen=True, slots=True)
@@ -185,7 +193,12 @@ class Layers:
         return [rung for rung in self.rungs if RUNGS.index(rung) < RUNGS.index("pathways")][-1]
 
 
-def build_layers(case: Case, statements: Statements, bound: BoundNetwork | None) -> Layers:
+def build_layers(
+    case: Case,
+    statements: Statements,
+    bound: BoundNetwork | None,
+    growth_residual: Mapping[str, Fraction],
+) -> Layers:
     """Problems of a case.
 
     Parameters
@@ -196,6 +209,8 @@ def build_layers(case: Case, statements: Statements, bound: BoundNetwork | None)
         Its quantitative statements.
     bound : BoundNetwork or None
         The network in numbers; ``None`` for elements alone.
+    growth_residual : mapping of str to Fraction
+        Elements that one mol of growth makes from nothing within its written digits.
 
     Returns
     -------
@@ -205,9 +220,7 @@ def build_layers(case: Case, statements: Statements, bound: BoundNetwork | None)
     rungs = ["elements"]
     rungs += ["measured"] if statements.measured else []
     rungs += ["demands"] if statements.demands else []
-    growth = bound.reaction(GROWTH) if bound else None
-    residual = bound.residual(growth) if bound and growth else {}
-    elements = element_problem(case, statements, residual)
+    elements = element_problem(case, statements, growth_residual)
     if bound is None:
         return Layers(
             case=case,

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import replace
+from dataclasses import dataclass, replace
 from fractions import Fraction
 from typing import TYPE_CHECKING
 
@@ -12,6 +12,7 @@ from yieldnet.balance.reconciled import reconciled_point
 from yieldnet.balance.statements import statements_of, with_bands, with_point, yield_column
 from yieldnet.foundation.errors import InputError
 from yieldnet.foundation.findings import Findings
+from yieldnet.model.binding import bind
 from yieldnet.model.network import Direction
 from yieldnet.optimum.engine import engine_named
 from yieldnet.optimum.problem import Bounds
@@ -19,13 +20,17 @@ from yieldnet.optimum.proof import Optimiser, Status
 from yieldnet.optimum.ranges import Range
 from yieldnet.prediction import checks
 from yieldnet.prediction.assumptions import assumptions_of
+from yieldnet.prediction.certificate import certificate
 from yieldnet.prediction.coefficients import (
     AllRanges,
     answers,
     find_ranges,
     freedom_of,
     layer_equations,
+    movements,
 )
+from yieldnet.prediction.conflict import find_conflict
+from yieldnet.prediction.fluxes import find_fluxes
 from yieldnet.prediction.ladder import (
     climb_down,
     first_infeasible,
@@ -33,6 +38,8 @@ from yieldnet.prediction.ladder import (
     runaway_words,
 )
 from yieldnet.prediction.layers import build_layers
+from yieldnet.prediction.limits import find_limits
+from yieldnet.prediction.relaxations import relax
 from yieldnet.prediction.result import (
     AimValue,
     CarbonDioxideNeed,
@@ -41,6 +48,7 @@ from yieldnet.prediction.result import (
     Prediction,
     Recovery,
 )
+from yieldnet.prediction.shares import find_shares, ladder_in_order
 
 if TYPE_CHECKING:
     from collections.abc import Mapping
@@ -48,17 +56,37 @@ if TYPE_CHECKING:
     from yieldnet.model.binding import BoundNetwork
     from yieldnet.model.case import Case
     from yieldnet.optimum.proof import Answer
+    from yieldnet.prediction.conflict import Conflict
     from yieldnet.prediction.ladder import Objective
     from yieldnet.prediction.layers import Layers
     from yieldnet.prediction.result import LadderRung
 
-__all__ = ["balance_case", "predict_case"]
+__all__ = ["Wanted", "balance_case", "predict_case"]
 
 _CARBON_DIOXIDE = "carbon dioxide"
 _ZERO = Fraction(0)
 
 
-def predict_case(case: Case, engine: str = "glpk") -> Prediction:
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Wanted:
+    """What else a prediction should hold.
+
+    Parameters
+    ----------
+    fluxes : bool
+        Fluxes at the aim.
+    proof : bool
+        The proof on paper.
+    order : tuple of str
+        Another order of the rungs below ``elements``; empty for none.
+    """
+
+    fluxes: bool = False
+    proof: bool = False
+    order: tuple[str, ...] = ()
+
+
+def predict_case(case: Case, engine: str = "glpk", wanted: Wanted | None = None) -> Prediction:
     """Yield coefficients of a case by elements and by network.
 
     Parameters
@@ -67,6 +95,8 @@ def predict_case(case: Case, engine: str = "glpk") -> Prediction:
         The question, with a network.
     engine : {"glpk", "optlang"}
         Engine whose bases are proven.
+    wanted : Wanted, optional
+        What else the answer should hold.
 
     Returns
     -------
@@ -76,7 +106,8 @@ def predict_case(case: Case, engine: str = "glpk") -> Prediction:
     Raises
     ------
     InputError
-        If the case has no network, or the network must be refused.
+        If the case has no network, the network must be refused, or the order of the rungs is not
+        one of this case.
     """
     findings = Findings(list(case.findings))
     if case.network is None:
@@ -91,7 +122,8 @@ def predict_case(case: Case, engine: str = "glpk") -> Prediction:
     bound, doubts = refusing_rules(case.network, dict(case.parameters), optimiser)
     findings.extend(doubts)
     findings.extend(checks.growth_conditions(case))
-    return _answer(case, bound, optimiser, findings)
+    residual = bound.growth_residual()
+    return _answer(case, bound, residual, optimiser, findings, wanted or Wanted())
 
 
 def balance_case(case: Case, engine: str = "glpk") -> Prediction:
@@ -114,17 +146,37 @@ def balance_case(case: Case, engine: str = "glpk") -> Prediction:
     InputError
         If the equation lacks a compound without which it cannot close.
     """
-    return _answer(case, None, Optimiser(engine_named(engine)), Findings(list(case.findings)))
+    optimiser = Optimiser(engine_named(engine))
+    residual: Mapping[str, Fraction] = {}
+    if case.network is not None:
+        # The element layer charges the residual of growth, so that both verbs say the same.
+        residual = bind(case.network, dict(case.parameters))[0].growth_residual()
+    return _answer(case, None, residual, optimiser, Findings(list(case.findings)), Wanted())
 
 
 def _answer(
-    case: Case, bound: BoundNetwork | None, optimiser: Optimiser, findings: Findings
+    case: Case,
+    bound: BoundNetwork | None,
+    residual: Mapping[str, Fraction],
+    optimiser: Optimiser,
+    findings: Findings,
+    wanted: Wanted,
 ) -> Prediction:
-    findings.extend(missing_compounds(case, optimiser))
+    findings.extend(missing_compounds(case, optimiser, residual))
     if findings.refused:
         raise InputError(findings.sorted())
     statements = statements_of(case)
-    layers = build_layers(case, statements, bound)
+    layers = build_layers(case, statements, bound, residual)
+    if wanted.order and sorted(wanted.order) != sorted(layers.rungs[1:]):
+        findings.add(
+            "YN514",
+            "the order names other rungs than the case has",
+            case.span,
+            left=f"asked {', '.join(wanted.order)}",
+            right=f"has {', '.join(layers.rungs[1:])}",
+            hint="Name each of these once, in any order.",
+        )
+        raise InputError(findings.sorted())
     findings.extend(checks.idle_switches(optimiser, layers))
     objective = objective_of(case) if bound or not (case.aim and case.aim.is_energy) else None
     point = reconciled_point(optimiser, layers.final, case, statements)
@@ -137,14 +189,15 @@ def _answer(
         case=case,
         outcome=Outcome.INFEASIBLE,
         aim=_aim_without_value(case),
-        freedom=freedom_of(layers, equations),
+        freedom=freedom_of(optimiser, layers, equations, point),
         ladder=ladder,
         findings=(),
         assumptions=assumptions_of(case, statements, bound),
     )
     if point is None:
-        findings.extend(_why_infeasible(layers, optimiser))
-        return replace(answer, findings=findings.sorted())
+        conflict = find_conflict(optimiser, layers)
+        findings.extend(_why_infeasible(layers, optimiser, conflict))
+        return replace(answer, findings=findings.sorted(), conflict=conflict)
     if best is not None and best.status is Status.UNBOUNDED:
         findings.add(
             "YN602",
@@ -166,6 +219,8 @@ def _answer(
     coefficient = case.coefficient(_CARBON_DIOXIDE)
     if carbon_dioxide and coefficient and coefficient.side is Direction.CONSUMED:
         carbon_dioxide = carbon_dioxide.turned()
+    if best is not None and objective is not None and bound is not None:
+        answer = _why(answer, layers, objective, best, point, optimiser, wanted)
     return replace(
         answer,
         outcome=outcome,
@@ -175,10 +230,35 @@ def _answer(
         recoveries=_recoveries(case, terms, layers),
         respiratory_quotient=_respiratory_quotient(ranges, carbon_dioxide),
         net_carbon_dioxide=carbon_dioxide,
+        movements=movements(optimiser, layers, ranges, point, best),
         carbon_dioxide_need=_carbon_dioxide_need(
             layers, point, carbon_dioxide, objective if best else None, optimiser
         ),
         findings=findings.sorted(),
+    )
+
+
+def _why(
+    answer: Prediction,
+    layers: Layers,
+    objective: Objective,
+    best: Answer,
+    point: Mapping[str, Fraction],
+    optimiser: Optimiser,
+    wanted: Wanted,
+) -> Prediction:
+    """What holds the best value back, and what was asked for besides."""
+    order: tuple[tuple[str, Fraction | None], ...] | str = ()
+    if wanted.order:
+        order = ladder_in_order(optimiser, layers, objective, point, wanted.order)
+    return replace(
+        answer,
+        relaxations=relax(optimiser, layers, objective, best),
+        limits=find_limits(optimiser, layers, best),
+        shares=find_shares(optimiser, layers, objective, point),
+        other_order=() if isinstance(order, str) else order,
+        fluxes=find_fluxes(optimiser, layers, best) if wanted.fluxes else None,
+        certificate=certificate(optimiser, layers, best) if wanted.proof else None,
     )
 
 
@@ -191,7 +271,7 @@ def _aim_without_value(case: Case) -> AimValue | None:
     )
 
 
-def _why_infeasible(layers: Layers, optimiser: Optimiser) -> Findings:
+def _why_infeasible(layers: Layers, optimiser: Optimiser, conflict: Conflict) -> Findings:
     findings = Findings()
     rung = first_infeasible(optimiser, layers) or layers.rungs[-1]
     words = {
@@ -207,7 +287,9 @@ def _why_infeasible(layers: Layers, optimiser: Optimiser) -> Findings:
         "YN601",
         f"infeasible from the rung '{rung}' on: {words[rung]}",
         layers.case.span,
-        hint="Give up or correct one of the statements of this rung or of those above it.",
+        hint="Give up or correct one statement of the conflict."
+        if conflict.members
+        else "The network itself cannot do it: add what it lacks.",
     )
     return findings
 

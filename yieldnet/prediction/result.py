@@ -19,6 +19,12 @@ if TYPE_CHECKING:
     from yieldnet.foundation.units import Weight
     from yieldnet.model.case import Case, Measurement
     from yieldnet.model.network import Direction
+    from yieldnet.prediction.certificate import Certificate
+    from yieldnet.prediction.conflict import Conflict
+    from yieldnet.prediction.fluxes import Fluxes
+    from yieldnet.prediction.limits import Limit
+    from yieldnet.prediction.relaxations import RelaxationReport
+    from yieldnet.prediction.shares import Shares
 
 __all__ = [
     "AimValue",
@@ -244,6 +250,22 @@ class Prediction:
         Carbon dioxide given off per oxygen taken up [mol/mol], where both are unique.
     net_carbon_dioxide : Range or None
         Net carbon dioxide of the filled-in equation, given off positive [mol/mol basis].
+    movements : tuple of tuple of (str, Fraction)
+        Directions in which coefficients that are not unique move together [mol/mol basis].
+    relaxations : RelaxationReport or None
+        What each thing given back would bring; ``None`` without a best value.
+    limits : tuple of Limit
+        How the aim changes as balances and statements move by a little.
+    conflict : Conflict or None
+        If infeasible, the statements that cannot hold together.
+    shares : Shares or None
+        Order-free share of each layer in the whole loss.
+    other_order : tuple of (str, Fraction or None)
+        Ladder in the order asked for [mol/mol basis].
+    fluxes : Fluxes or None
+        Fluxes at the aim, if asked for.
+    certificate : Certificate or None
+        The proof on paper, if asked for.
     carbon_dioxide_need : CarbonDioxideNeed or None
         If the best value needs it from outside.
     findings : tuple of Finding
@@ -264,6 +286,14 @@ class Prediction:
     recoveries: tuple[Recovery, ...] = ()
     respiratory_quotient: Fraction | None = None
     net_carbon_dioxide: Range | None = None
+    movements: tuple[tuple[tuple[str, Fraction], ...], ...] = ()
+    relaxations: RelaxationReport | None = None
+    limits: tuple[Limit, ...] = ()
+    conflict: Conflict | None = None
+    shares: Shares | None = None
+    other_order: tuple[tuple[str, Fraction | None], ...] = ()
+    fluxes: Fluxes | None = None
+    certificate: Certificate | None = None
     carbon_dioxide_need: CarbonDioxideNeed | None = None
 
     def __repr__(self) -> str:

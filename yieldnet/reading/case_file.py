@@ -8,7 +8,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from yieldnet.chemistry.formula import Formula, FormulaTextError, read_formula
-from yieldnet.chemistry.library import find_compound, library_names
+from yieldnet.chemistry.library import find_biomass, find_compound, library_names
 from yieldnet.foundation.exact import WrittenNumber
 from yieldnet.foundation.findings import Findings, Severity, near
 from yieldnet.foundation.units import (
@@ -19,6 +19,7 @@ from yieldnet.foundation.units import (
     yield_factor,
 )
 from yieldnet.model.case import (
+    BAND,
     Aim,
     AimDirection,
     Case,
@@ -157,6 +158,7 @@ class _Reader:
             return None
         return Case(
             title=fields.text("case"),
+            about=fields.text("about"),
             network=self.network,
             equation=equation,
             basis=self.basis,
@@ -268,6 +270,9 @@ class _Reader:
     def _formula(self, node: Node, label: str) -> Formula | None:
         written = text(node, label, self.findings)
         try:
+            biomass = find_biomass(written) if written is not None else None
+            if biomass is not None:
+                return biomass.formula
             return read_formula(written) if written is not None else None
         except FormulaTextError as error:
             self.findings.add(error.code, f"{label}: {error.reason}", node.span, hint=error.hint)
@@ -288,6 +293,14 @@ class _Reader:
         )
         if equation is None:
             return None
+        if equation.reversible:
+            self.findings.add(
+                "YN208",
+                "the overall equation runs one way",
+                node.span,
+                left="found <->",
+                hint="Write ->; list a compound under 'either side' if its side is not known.",
+            )
         basis, *others = equation.terms()
         self._take_basis(basis[1].name, str(basis[1].coefficient), basis[1].coefficient, node)
         for sign, term in others:
@@ -522,12 +535,24 @@ class _Reader:
                     hint="Write ? in the equation.",
                 )
                 continue
+            reach = quantity.number.value + BAND * (quantity.sd or 0)
+            if reach < 0 and self.coefficients[name].side is not Direction.EITHER:
+                self.findings.add(
+                    "YN210",
+                    f"measured {key.text} {written} is negative beyond its error",
+                    value.span,
+                    left=f"positive means {self.coefficients[name].side}",
+                    hint="Write its size, or list the compound under 'either side'.",
+                )
+                continue
             found[name] = Measurement(
                 compound=name,
                 value=quantity.number.value * factor,
                 sd=quantity.sd * factor if quantity.sd else None,
                 text=written,
                 label=f"measured {name}",
+                unit=str(quantity.unit or "mol/mol"),
+                factor=factor,
                 span=key.span,
             )
         return tuple(found.values())
@@ -557,11 +582,27 @@ class _Reader:
                     hint="Write one range: 0.05 to 0.30.",
                 )
                 continue
+            high = bounds.high.value if bounds.high else None
+            if (
+                high is not None
+                and high < 0
+                and self.coefficients[name].side is not Direction.EITHER
+            ):
+                self.findings.add(
+                    "YN210",
+                    f"demand {key.text} {written} asks for a negative amount",
+                    value.span,
+                    left=f"positive means {self.coefficients[name].side}",
+                    hint="Write its size, or list the compound under 'either side'.",
+                )
+                continue
             found[name] = Demand(
                 compound=name,
                 low=bounds.low.value * factor if bounds.low else None,
                 high=bounds.high.value * factor if bounds.high else None,
                 text=written,
+                unit=str(bounds.unit or "mol/mol"),
+                factor=factor,
                 span=key.span,
             )
         return tuple(found.values())
@@ -584,6 +625,15 @@ class _Reader:
         direction = AimDirection(word)
         carriers = self.network.carriers if self.network else ()
         energy = [item.name for item in carriers if item.kind is CarrierKind.ENERGY]
+        if rest in energy and self.fields.get("energy surplus") is not None:
+            surplus = self.fields.get("energy surplus")
+            if surplus is not None and surplus.text == EnergySurplus.NONE:
+                self.findings.add(
+                    "YN515",
+                    f"the aim is spare {rest}, and 'energy surplus: none' says there is none",
+                    node.span,
+                    hint="Leave 'energy surplus' out, or take another aim.",
+                )
         if rest in energy:
             if direction is AimDirection.LEAST:
                 self.findings.add(

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+from dataclasses import replace
 from typing import TYPE_CHECKING
 
 from yieldnet.foundation.exact import NumberTextError, read_number
@@ -163,6 +164,10 @@ def _read_term(
             )
             return None
         name = rest.strip()
+        if name.startswith("exact "):
+            # A decimal that is no measurement: its last digit spans no interval.
+            coefficient = replace(coefficient, last_place=None)
+            name = name.removeprefix("exact ").strip()
     if not name:
         refuse(f"{piece[:_SHORT]!r} names no compound", "Write a compound after the coefficient.")
         return None

@@ -46,6 +46,15 @@ class NameBook:
         if name is None:
             if self.accept_all:
                 return word
+            entry = None if self.use_library else find_compound(word)
+            if entry is not None:
+                self.findings.add(
+                    "YN301",
+                    f"compound {word!r} is in the library, but not in this network",
+                    span,
+                    hint="Add reactions with it to the network, or leave it out.",
+                )
+                return None
             self.findings.add(
                 "YN301",
                 f"compound {word!r} is not known",

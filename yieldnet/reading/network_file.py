@@ -262,7 +262,11 @@ class _Reader:
             if formula is not None:
                 self.carriers.append(
                     Carrier(
-                        name=key.text, kind=CarrierKind(kind.text), formula=formula, span=key.span
+                        name=key.text,
+                        kind=CarrierKind(kind.text),
+                        formula=formula,
+                        about=fields.text("about"),
+                        span=key.span,
                     )
                 )
             self.book.own[key.text] = None
@@ -585,6 +589,13 @@ class _Reader:
                 error.code, f"maintenance: {error.reason}", value.span, hint=error.hint
             )
             return None
+        if quantity.sd is not None:
+            self.findings.add(
+                "YN210",
+                "maintenance has an error, which nothing here would use",
+                value.span,
+                hint="Write the value alone; a parameter may have a low and a high.",
+            )
         if quantity.number.value < 0:
             self.findings.add(
                 "YN210",

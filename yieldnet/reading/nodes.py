@@ -7,6 +7,7 @@ float on the way: the field that reads a piece decides what it means.
 from __future__ import annotations
 
 import re
+import warnings
 from dataclasses import dataclass
 from enum import StrEnum
 from typing import TYPE_CHECKING, Any
@@ -88,7 +89,10 @@ def compose(text: str, path: str, findings: Findings) -> Node | None:
     from ruamel.yaml.reader import ReaderError
 
     try:
-        root = YAML(typ="safe", pure=True).compose(text)
+        with warnings.catch_warnings():
+            # The library warns of reused anchors; every anchor is refused below anyway.
+            warnings.simplefilter("ignore")
+            root = YAML(typ="safe", pure=True).compose(text)
     except MarkedYAMLError as error:
         _syntax(error, text, path, findings)
         return None

@@ -57,8 +57,8 @@ def read_quantity(text: str, span: SourceSpan, label: str, findings: Findings) -
     Parameters
     ----------
     text : str
-        ``0.11 ± 0.01 g/g``; ``+/-`` and ``+-`` stand for ±, and the error may be a percentage of
-        the value.
+        ``0.11 ± 0.01 g/g``; ``+/-`` and ``+-`` stand for ±, the error may be a percentage of the
+        value, and ``exact`` may stand in its place.
     span : SourceSpan
         Where it stands.
     label : str
@@ -75,7 +75,9 @@ def read_quantity(text: str, span: SourceSpan, label: str, findings: Findings) -
         words = _words(text)
         number, rest = _number(words)
         sd: Fraction | None = None
-        if rest and rest[0] == "±":
+        if rest and rest[0] == "exact":
+            rest = rest[1:]
+        elif rest and rest[0] == "±":
             if len(rest) < 2:
                 raise _Refused("YN201", "nothing stands after ±", "Write a standard deviation.")
             word, rest = rest[1], rest[2:]
@@ -169,6 +171,10 @@ def _read(word: str) -> WrittenNumber:
 def _unit(words: list[str]) -> Unit | None:
     if not words:
         return None
+    if "±" in words:
+        raise _Refused(
+            "YN203", "the error stands after the unit", "Write number ± error unit: 0.3 ± 0.1 g/g."
+        )
     if words == ["%"]:
         raise _Refused(
             "YN201", "a percentage is not understood here", "Write it as a fraction of 1: 0.05."

@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING
 if TYPE_CHECKING:
     from yieldnet.optimum.ranges import Range
 
-__all__ = ["DIGITS", "figure", "percent", "range_text", "signed"]
+__all__ = ["DIGITS", "figure", "percent", "range_text", "signed", "with_sign"]
 
 DIGITS = 3
 """Significant digits of a number in a text: no cultivation is known better [-]."""
@@ -54,6 +54,17 @@ def signed(value: float) -> str:
     '+0.50'
     """
     return f"{value:+.2f}"
+
+
+def with_sign(value: Fraction | None) -> str:
+    """Number in three significant digits with its sign; ``0`` without.
+
+    Examples
+    --------
+    >>> with_sign(Fraction(1, 2)), with_sign(Fraction(0))
+    ('+0.500', '0')
+    """
+    return f"+{figure(value)}" if value is not None and value > 0 else figure(value)
 
 
 def percent(value: Fraction | None) -> str:

@@ -7,6 +7,7 @@ from fractions import Fraction
 from typing import TYPE_CHECKING, Any
 
 from yieldnet.report.view import equation_text
+from yieldnet.report.why_view import limit_words, relaxation_words
 
 if TYPE_CHECKING:
     from collections.abc import Iterable
@@ -14,6 +15,7 @@ if TYPE_CHECKING:
     from yieldnet.audit.audit import AuditResult
     from yieldnet.foundation.findings import Finding
     from yieldnet.optimum.ranges import Range
+    from yieldnet.prediction.certificate import Certificate
     from yieldnet.prediction.result import CoefficientAnswer, Prediction
 
 __all__ = [
@@ -23,6 +25,7 @@ __all__ = [
     "findings_form",
     "prediction_form",
     "refused_form",
+    "unread_audit_form",
 ]
 
 FORMAT = 1
@@ -101,6 +104,13 @@ def refused_form(findings: Iterable[Finding]) -> dict[str, Any]:
         "respiratory_quotient": None,
         "net_carbon_dioxide": None,
         "carbon_dioxide_need": None,
+        "movements": [],
+        "shares": {"layers": [], "reason": None},
+        "other_order": [],
+        "without_effect": None,
+        "not_offered": None,
+        "fluxes": None,
+        "proof": None,
         "findings": findings_form(findings),
         "assumptions": [],
     }
@@ -130,7 +140,7 @@ def prediction_form(result: Prediction) -> dict[str, Any]:
                 "unknowns": item.unknowns,
                 "rank": item.rank,
                 "free": item.free,
-                "free_in_fact": None,
+                "free_in_fact": item.free_in_fact,
             }
             for item in result.freedom
         ],
@@ -183,6 +193,7 @@ def prediction_form(result: Prediction) -> dict[str, Any]:
                 for term in result.terms
             ],
         }
+    form.update(_why(result))
     need = result.carbon_dioxide_need
     if need is not None:
         form["carbon_dioxide_need"] = {
@@ -191,6 +202,103 @@ def prediction_form(result: Prediction) -> dict[str, Any]:
             "without": _number(need.without),
         }
     return form
+
+
+def _why(result: Prediction) -> dict[str, Any]:
+    """Relaxations, limits, conflict, shares, and what was asked for besides."""
+    form: dict[str, Any] = {
+        "movements": [{name: float(change) for name, change in move} for move in result.movements],
+        "limits": [
+            {
+                "kind": item.kind,
+                "name": item.name,
+                "unit": item.unit,
+                "gain": _number(item.gain),
+                "cost": _number(item.cost),
+                "exact_gain": _exact(item.gain),
+                "exact_cost": _exact(item.cost),
+                "gain_until": _number(item.gain_until),
+                "cost_until": _number(item.cost_until),
+                "words": limit_words(item),
+            }
+            for item in result.limits
+        ],
+        "other_order": [
+            {"rung": rung, "value": _number(value), "exact": _exact(value)}
+            for rung, value in result.other_order
+        ],
+    }
+    report = result.relaxations
+    if report is not None:
+        form["without_effect"] = report.without_effect
+        form["not_offered"] = report.not_offered
+        form["relaxations"] = [
+            {
+                "parts": [{"kind": kind, "name": name} for kind, name in item.parts],
+                "value": _number(item.value),
+                "exact": _exact(item.value),
+                "gain": _number(item.gain),
+                "exact_gain": _exact(item.gain),
+                "reason": item.reason or None,
+                "words": relaxation_words(item),
+            }
+            for item in report.helpful
+        ]
+    if result.shares is not None:
+        form["shares"] = {
+            "layers": [
+                {"layer": item.layer, "share": float(item.share), "exact": str(item.share)}
+                for item in result.shares.shares
+            ],
+            "reason": result.shares.reason or None,
+        }
+    if result.conflict is not None:
+        form["conflict"] = {
+            "least": result.conflict.least,
+            "lacking": list(result.conflict.lacking),
+            "members": [
+                {
+                    "kind": item.kind,
+                    "name": item.name,
+                    "needs": _number(item.needs),
+                    "needs_sd": item.needs_sd,
+                    "unit": item.unit,
+                }
+                for item in result.conflict.members
+            ],
+        }
+    if result.fluxes is not None:
+        form["fluxes"] = {
+            "reactions": [
+                {
+                    "reaction": item.reaction,
+                    "flux": float(item.flux),
+                    "exact": str(item.flux),
+                    **(_range(item.range) or {}),
+                }
+                for item in result.fluxes.answers
+            ],
+            "loops": [list(loop) for loop in result.fluxes.loops],
+        }
+    if result.certificate is not None:
+        form["proof"] = _proof(result.certificate)
+    return form
+
+
+def _proof(proof: Certificate) -> dict[str, Any]:
+    """The proof on paper, all numbers exact."""
+    return {
+        "value": str(proof.value),
+        "terms": [
+            {"name": item.name, "worth": str(item.worth), "amount": str(item.amount)}
+            for item in proof.terms
+        ],
+        "worths": {name: str(worth) for name, worth in proof.worths},
+        "reactions": [
+            {"reaction": item.name, "flux": str(item.flux), "made": str(item.made)}
+            for item in proof.reactions
+        ],
+    }
 
 
 def _coefficient(item: CoefficientAnswer) -> dict[str, Any]:
@@ -233,6 +341,17 @@ def _coefficient(item: CoefficientAnswer) -> dict[str, Any]:
         "at_aim": _range(item.at_aim),
         "percent": None if item.percent is None else float(100 * item.percent),
         "status": str(item.status),
+    }
+
+
+def unread_audit_form(findings: Iterable[Finding]) -> dict[str, Any]:
+    """Form of an audit of a file that could not be read as a network."""
+    return {
+        "format": FORMAT,
+        "network": None,
+        "status": "refused",
+        "reactions": None,
+        "findings": findings_form(findings),
     }
 
 

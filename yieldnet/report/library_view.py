@@ -17,8 +17,8 @@ from yieldnet.chemistry.library import (
 )
 from yieldnet.model.network import BIOMASS, Direction
 from yieldnet.report.figures import figure, percent
+from yieldnet.report.table import Table
 from yieldnet.report.text import wrapped
-from yieldnet.report.view import Table
 
 if TYPE_CHECKING:
     from yieldnet.model.network import Network

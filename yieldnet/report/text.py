@@ -11,13 +11,14 @@ if TYPE_CHECKING:
     from rich.console import Console
 
     from yieldnet.foundation.findings import Finding
-    from yieldnet.report.view import PredictionView, Table
+    from yieldnet.report.table import Table
+    from yieldnet.report.view import PredictionView
 
 __all__ = ["WIDTH", "console", "print_findings", "print_prediction", "print_table", "wrapped"]
 
 WIDTH = 80
 """Widest line [characters]."""
-_BAR = 16
+_BAR = 10
 _STYLE = {"error": "bold red", "warning": "yellow", "note": "dim"}
 
 
@@ -56,7 +57,7 @@ def _heading(out: Console, text: str) -> None:
     out.print(text, style="bold")
 
 
-def print_table(out: Console, table: Table, bars: tuple[float, ...] = ()) -> None:
+def print_table(out: Console, table: Table) -> None:
     """Print a table: first column and texts to the left, numbers to the right.
 
     Parameters
@@ -65,8 +66,6 @@ def print_table(out: Console, table: Table, bars: tuple[float, ...] = ()) -> Non
         Where to.
     table : Table
         What.
-    bars : tuple of float
-        Bar at the end of each row, as a fraction of the longest [-].
     """
     _heading(out, table.title)
     if not table.rows:
@@ -94,8 +93,8 @@ def print_table(out: Console, table: Table, bars: tuple[float, ...] = ()) -> Non
     for i, row in enumerate(table.rows):
         pieces = textwrap.wrap(row[widest], widths[widest]) or [""]
         text = line((*row[:widest], pieces[0], *row[widest + 1 :]))
-        if bars:
-            text += "  " + "▪" * round(_BAR * bars[i])
+        if table.bars:
+            text += "  " + "▪" * round(_BAR * table.bars[i])
         out.print(text.rstrip())
         for piece in pieces[1:]:
             blank = ("",) * len(row)
@@ -105,7 +104,8 @@ def print_table(out: Console, table: Table, bars: tuple[float, ...] = ()) -> Non
 
 
 def _is_figure(cell: str) -> bool:
-    return not cell or cell[0].isdigit() or cell[0] in "-(" or cell.startswith("unbounded")
+    words = ("unbounded", "impossible", "none", "ever")
+    return not cell or cell[0].isdigit() or cell[0] in "+-(" or cell.startswith(words)
 
 
 def print_findings(out: Console, findings: Iterable[Finding]) -> None:
@@ -150,8 +150,18 @@ def print_prediction(out: Console, view: PredictionView, findings: Iterable[Find
     if view.equation:
         out.print()
         out.print(wrapped(view.equation, "  ", "    "))
+    if view.conflict:
+        out.print()
+        for text in view.conflict:
+            out.print(wrapped(text, "", "  "))
     for table in view.tables:
-        print_table(out, table, view.bars if table.title.startswith("Ladder") else ())
+        print_table(out, table)
+    if view.proof:
+        _heading(out, "Proof that nothing better is possible")
+        for text in view.proof:
+            out.print(wrapped(text, "  "))
+        for table in view.proof_tables:
+            print_table(out, table)
     if view.remarks:
         out.print()
         for remark in view.remarks:

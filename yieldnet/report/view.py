@@ -12,11 +12,22 @@ from yieldnet.model.network import Direction
 from yieldnet.optimum.ranges import Range
 from yieldnet.prediction.layers import switched_off
 from yieldnet.report.figures import figure, percent, range_text, signed
+from yieldnet.report.table import Table
+from yieldnet.report.why_view import (
+    conflict_lines,
+    fluxes_table,
+    limits_table,
+    movement_lines,
+    proof_lines,
+    proof_tables,
+    relaxations_table,
+)
 
 if TYPE_CHECKING:
+    from yieldnet.balance.freedom import Freedom
     from yieldnet.prediction.result import CoefficientAnswer, Prediction
 
-__all__ = ["UNITS", "PredictionView", "Table", "equation_text", "view_of"]
+__all__ = ["UNITS", "PredictionView", "equation_text", "view_of"]
 
 UNITS = ("mol/mol", "g/g", "C-mol/C-mol")
 """Units in which a text can tell yields."""
@@ -25,28 +36,6 @@ _SIDE_WORD = {
     Direction.PRODUCED: "given off",
     Direction.EITHER: "either way",
 }
-
-
-@dataclass(frozen=True, slots=True, kw_only=True)
-class Table:
-    """A table of texts.
-
-    Parameters
-    ----------
-    title : str
-        Heading with the unit.
-    columns : tuple of str
-        Column headings.
-    rows : tuple of tuple of str
-        Cells.
-    note : str
-        Line under the table.
-    """
-
-    title: str
-    columns: tuple[str, ...]
-    rows: tuple[tuple[str, ...], ...]
-    note: str = ""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -61,10 +50,14 @@ class PredictionView:
         The answer in one line.
     equation : str
         Filled-in overall equation.
+    conflict : tuple of str
+        Statements that cannot hold together.
     tables : tuple of Table
-        Coefficients, equation, ladder, freedom; empty ones left out.
-    bars : tuple of float
-        Length of each ladder bar as a fraction of the first; empty without a ladder [-].
+        Coefficients, equation, ladder, relaxations, limits, fluxes; empty ones left out.
+    proof : tuple of str
+        The line of arithmetic that bounds the aim, and how to check it.
+    proof_tables : tuple of Table
+        Worths and fluxes of the proof.
     remarks : tuple of str
         Recoveries, respiratory quotient, carbon dioxide.
     findings : tuple of (str, str)
@@ -77,8 +70,10 @@ class PredictionView:
     setting: str
     headline: str
     equation: str
+    conflict: tuple[str, ...]
     tables: tuple[Table, ...]
-    bars: tuple[float, ...]
+    proof: tuple[str, ...]
+    proof_tables: tuple[Table, ...]
     remarks: tuple[str, ...]
     findings: tuple[tuple[str, str], ...]
     assumptions: tuple[tuple[str, str, str], ...]
@@ -106,13 +101,17 @@ def view_of(result: Prediction, unit: str = "mol/mol") -> PredictionView:
         tables.append(_ladder(result))
     elif result.freedom:
         tables.append(_freedom(result))
+    why = (relaxations_table(result), limits_table(result), fluxes_table(result))
+    tables += [table for table in why if table is not None]
     return PredictionView(
         title=result.case.title,
         setting=_setting(result),
         headline=_headline(result),
         equation=equation_text(result),
+        conflict=conflict_lines(result),
         tables=tuple(tables),
-        bars=_bars(result),
+        proof=proof_lines(result),
+        proof_tables=proof_tables(result),
         remarks=_remarks(result),
         findings=tuple((str(item.severity), str(item)) for item in result.findings),
         assumptions=tuple(
@@ -197,7 +196,7 @@ def _coefficients(result: Prediction, unit: str) -> Table:
         measured = ""
         if item.reconciled is not None:
             mean, sd = item.reconciled.mean * factor, item.reconciled.sd
-            measured = figure(mean) + (f" ± {figure(sd * factor)}" if sd else " exact")
+            measured = figure(mean) + (f"±{figure(sd * factor)}" if sd else " exact")
         elif item.measurements:
             measured = f"({figure(item.measurements[0].value * factor)})"
         cells = [item.compound, measured, range_text(_scaled(item.elements, factor))]
@@ -256,7 +255,10 @@ def _filled(result: Prediction) -> Table:
 
 
 def _ladder(result: Prediction) -> Table:
-    free = {item.layer: str(item.free) for item in result.freedom}
+    free = {item.layer: _free(item) for item in result.freedom}
+    shares = {}
+    if result.shares is not None:
+        shares = {item.layer: figure(item.share) for item in result.shares.shares}
     rows = tuple(
         (
             item.rung,
@@ -264,6 +266,7 @@ def _ladder(result: Prediction) -> Table:
             free[item.rung],
             "none" if item.value is None else figure(item.value),
             "" if item.loss is None else figure(item.loss),
+            *((shares.get(item.rung, ""),) if shares else ()),
         )
         for item in result.ladder
     )
@@ -273,13 +276,23 @@ def _ladder(result: Prediction) -> Table:
             reasons.setdefault(item.reason, []).append(item.rung)
     notes = [f"{', '.join(rungs)}: {reason}." for reason, rungs in reasons.items()]
     notes.append(f"free: how many of the {result.case.unknowns()} unknowns are left.")
+    if shares:
+        notes.append("share: the cost averaged over all orders of the layers.")
+    elif result.shares is not None:
+        notes.append(f"No shares: {result.shares.reason}.")
+    if result.other_order:
+        other = "; ".join(f"{rung} {figure(value)}" for rung, value in result.other_order)
+        notes.append(f"In the order asked for: {other}.")
+    if any("(" in text for text in free.values()):
+        notes.append("In brackets: counting equalities that signs force.")
     if "redox" in free:
         notes.append("The total electron balance is already in 'elements'.")
     return Table(
         title=f"Ladder: {result.case.aim}, mol/mol",
-        columns=("rung", "what it adds", "free", "best", "costs"),
+        columns=("rung", "what it adds", "free", "best", "costs", *(("share",) * bool(shares))),
         rows=rows,
         note=" ".join(notes),
+        bars=_bars(result),
     )
 
 
@@ -319,6 +332,13 @@ def _charged(result: Prediction) -> bool:
     return any(item.formula.charge for item in result.case.compounds)
 
 
+def _free(item: Freedom) -> str:
+    """Degrees of freedom, with those left in fact where signs take some away."""
+    if item.free_in_fact is None or item.free_in_fact == item.free:
+        return str(item.free)
+    return f"{item.free} ({item.free_in_fact})"
+
+
 def _bars(result: Prediction) -> tuple[float, ...]:
     values = [item.value for item in result.ladder]
     longest = max((abs(value) for value in values if value is not None), default=Fraction(0))
@@ -332,8 +352,7 @@ def _freedom(result: Prediction) -> Table:
         title="Degrees of freedom",
         columns=("rung", "unknowns", "rank", "free"),
         rows=tuple(
-            (item.layer, str(item.unknowns), str(item.rank), str(item.free))
-            for item in result.freedom
+            (item.layer, str(item.unknowns), str(item.rank), _free(item)) for item in result.freedom
         ),
     )
 
@@ -363,6 +382,7 @@ def _remarks(result: Prediction) -> tuple[str, ...]:
             f"The best value takes up {range_text(amount)} mol carbon dioxide net;"
             f" without net uptake the best is {without}."
         )
+    found += movement_lines(result)
     moved = [
         f"{item.compound} {signed(item.reconciled.moved_sd)}"
         for item in result.coefficients

@@ -1,0 +1,169 @@
+"""Fluxes at the aim: the pattern of least total flux, which fluxes are unique, idle loops."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from fractions import Fraction
+from typing import TYPE_CHECKING
+
+from yieldnet.audit.flux import closed_network
+from yieldnet.optimum.problem import FREE, Bounds, Column, Matrix, Problem, Row
+from yieldnet.optimum.proof import Status
+from yieldnet.optimum.ranges import column_ranges
+from yieldnet.prediction.layers import flux_column
+
+if TYPE_CHECKING:
+    from yieldnet.optimum.proof import Answer, Optimiser
+    from yieldnet.optimum.ranges import Range
+    from yieldnet.prediction.layers import Layers
+
+__all__ = ["FluxAnswer", "Fluxes", "find_fluxes", "least_fluxes"]
+
+_ZERO = Fraction(0)
+_ONE = Fraction(1)
+_MADE = Bounds(_ZERO, None)
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class FluxAnswer:
+    """Flux of one reaction at the aim.
+
+    Parameters
+    ----------
+    reaction : str
+        Its name.
+    flux : Fraction
+        In the pattern of least total flux, backwards negative [mol/mol basis].
+    range : Range
+        Over all optimal points [mol/mol basis].
+    """
+
+    reaction: str
+    flux: Fraction
+    range: Range
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Fluxes:
+    """Fluxes at the aim.
+
+    Parameters
+    ----------
+    answers : tuple of FluxAnswer
+        One a reaction that is not switched off.
+    loops : tuple of tuple of str
+        Reactions that can turn together for nothing, at any speed; they stand still in the pattern.
+    """
+
+    answers: tuple[FluxAnswer, ...]
+    loops: tuple[tuple[str, ...], ...]
+
+
+def least_fluxes(optimiser: Optimiser, layers: Layers, best: Answer) -> dict[str, Fraction]:
+    """Fluxes of the optimal point with the least sum of their sizes.
+
+    Parameters
+    ----------
+    optimiser : Optimiser
+        Solves and proves.
+    layers : Layers
+        The problems.
+    best : Answer
+        Proven optimum of the final problem.
+
+    Returns
+    -------
+    dict of str to Fraction
+        Flux by reaction, backwards negative [mol/mol basis].
+    """
+    assert layers.bound is not None
+    face = best.optimal_face()
+    columns = list(face.columns)
+    rows = list(face.rows)
+    entries = list(face.matrix.rows)
+    objective: dict[str, Fraction] = {}
+    for item in layers.bound.reactions:
+        name = flux_column(item.name)
+        place = face.column(name)
+        low = columns[place].bounds.low
+        if low is not None and low >= 0:
+            objective[name] = _ONE
+            continue
+        label = f"size of {name}"
+        at = len(columns)
+        columns.append(Column(name=label, bounds=_MADE))
+        for way in (_ONE, -_ONE):
+            rows.append(Row(name=f"{label} {way}", layer="", bounds=_MADE))
+            entries.append(((at, _ONE), (place, way)))
+        objective[label] = _ONE
+    problem = Problem(
+        columns=tuple(columns),
+        rows=tuple(rows),
+        matrix=Matrix(tuple(entries), len(columns)),
+    )
+    answer = optimiser.optimise(problem, objective, maximise=False)
+    return {item.name: answer[flux_column(item.name)] for item in layers.bound.reactions}
+
+
+def find_fluxes(optimiser: Optimiser, layers: Layers, best: Answer) -> Fluxes:
+    """Pattern of least total flux, range of each flux at the aim, and idle loops.
+
+    Parameters
+    ----------
+    optimiser : Optimiser
+        Solves and proves.
+    layers : Layers
+        The problems.
+    best : Answer
+        Proven optimum of the final problem at the reconciled point.
+
+    Returns
+    -------
+    Fluxes
+        Fluxes of all reactions that are not switched off.
+    """
+    assert layers.bound is not None
+    pattern = least_fluxes(optimiser, layers, best)
+    face = best.optimal_face()
+    names = [
+        item.name
+        for item in layers.bound.reactions
+        if best.problem.columns[best.problem.column(flux_column(item.name))].bounds
+        != Bounds(_ZERO, _ZERO)
+    ]
+    ranges = column_ranges(optimiser, face, [flux_column(name) for name in names], (best,))
+    assert ranges is not None
+    return Fluxes(
+        answers=tuple(
+            FluxAnswer(reaction=name, flux=pattern[name], range=ranges[flux_column(name)])
+            for name in names
+        ),
+        loops=_loops(optimiser, layers, names),
+    )
+
+
+def _loops(optimiser: Optimiser, layers: Layers, names: list[str]) -> tuple[tuple[str, ...], ...]:
+    """Loops that turn with nothing crossing and no energy made or spent."""
+    assert layers.bound is not None
+    closed = closed_network(layers.bound)
+    allowed = set(names)
+    shut = Bounds(_ZERO, _ZERO)
+    bounds: dict[str, Bounds] = {}
+    for column in closed.columns:
+        # Crossing compounds and surpluses are no reactions, so they are shut with the rest.
+        low = -_ONE if column.bounds == FREE else _ZERO
+        bounds[column.name] = Bounds(low, _ONE) if column.name in allowed else shut
+    problem = closed.with_columns(bounds)
+    found: list[tuple[str, ...]] = []
+    met: set[str] = set()
+    for name in names:
+        if name in met:
+            continue
+        for maximise in (True, False):
+            answer = optimiser.optimise(problem, {name: _ONE}, maximise)
+            if answer.status is Status.OPTIMAL and answer[name]:
+                loop = tuple(other for other in names if answer[other])
+                met.update(loop)
+                found.append(loop)
+                break
+    return tuple(found)
