@@ -11,7 +11,15 @@ from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
     from yieldnet.foundation.errors import InputError, SolveError, YieldnetError
-    from yieldnet.verbs import audit, balance, predict, read_case, read_network
+    from yieldnet.verbs import (
+        audit,
+        balance,
+        explain,
+        predict,
+        read_case,
+        read_network,
+        schema,
+    )
 
 __all__ = [
     "InputError",
@@ -19,9 +27,11 @@ __all__ = [
     "YieldnetError",
     "audit",
     "balance",
+    "explain",
     "predict",
     "read_case",
     "read_network",
+    "schema",
 ]
 __version__ = "0.1.0"
 

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import os
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 from yieldnet.foundation.errors import InputError
 
@@ -17,7 +17,7 @@ if TYPE_CHECKING:
 
     Path = str | os.PathLike[str]
 
-__all__ = ["audit", "balance", "predict", "read_case", "read_network"]
+__all__ = ["audit", "balance", "explain", "predict", "read_case", "read_network", "schema"]
 
 
 def read_case(path: Path) -> Case:
@@ -189,6 +189,67 @@ def audit(network: Network | Path, *, engine: str = "glpk") -> AuditResult:
 
     written = network if isinstance(network, Network) else read_network(network)
     return audit_network(written, engine)
+
+
+def explain(word: str) -> str:
+    """What a word of the glossary or a finding code means.
+
+    Parameters
+    ----------
+    word : str
+        Word, status, rung or code; capitals do not count.
+
+    Returns
+    -------
+    str
+        Its meaning.
+
+    Raises
+    ------
+    KeyError
+        If it is neither.
+
+    Examples
+    --------
+    >>> explain("RQ")
+    'Respiratory quotient: carbon dioxide given off per oxygen taken up.'
+    """
+    from yieldnet.foundation.catalogue import CATALOGUE
+    from yieldnet.foundation.glossary import GLOSSARY
+
+    for name, meaning in GLOSSARY.items():
+        if name.casefold() == word.casefold():
+            return meaning
+    entry = CATALOGUE[word.upper()]
+    return f"{entry.title}. {entry.why} {entry.way_out}"
+
+
+def schema(file: str) -> dict[str, Any]:
+    """JSON Schema of one of the two files.
+
+    Parameters
+    ----------
+    file : {"case", "network"}
+        Which file.
+
+    Returns
+    -------
+    dict
+        The schema, draft 2020-12.
+
+    Raises
+    ------
+    KeyError
+        If there is no such file.
+
+    Examples
+    --------
+    >>> schema("case")["title"]
+    'yieldnet case'
+    """
+    from yieldnet.reading.schema import case_schema, network_schema
+
+    return {"case": case_schema, "network": network_schema}[file]()
 
 
 def _as_case(case: Case | Path) -> Case:

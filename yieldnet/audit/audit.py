@@ -15,7 +15,7 @@ if TYPE_CHECKING:
     from collections.abc import Mapping
     from fractions import Fraction
 
-    from yieldnet.foundation.findings import Finding, Findings
+    from yieldnet.foundation.findings import Finding, Findings, SourceSpan
     from yieldnet.model.binding import BoundNetwork
     from yieldnet.model.network import Network
 
@@ -83,12 +83,17 @@ def audit_network(network: Network, engine: str = "glpk") -> AuditResult:
         findings.extend(rule(bound))
     optimiser = Optimiser(engine_named(engine))
     findings.extend(flux.energy_from_nothing(bound, optimiser))
+    findings.extend(flux.energy_for_nothing(bound, optimiser))
+    findings.extend(flux.tied_carriers(bound, optimiser))
     findings.extend(flux.blocked_reactions(bound, optimiser))
     return AuditResult(network=network, bound=bound, findings=findings.sorted())
 
 
 def refusing_rules(
-    network: Network, overrides: Mapping[str, Fraction], optimiser: Optimiser
+    network: Network,
+    overrides: Mapping[str, Fraction],
+    optimiser: Optimiser,
+    places: Mapping[str, SourceSpan] | None = None,
 ) -> tuple[BoundNetwork, Findings]:
     """Numbers of a network, and the findings without which no prediction is made.
 
@@ -100,6 +105,8 @@ def refusing_rules(
         Other values of some parameters.
     optimiser : Optimiser
         Solves the problem of energy from nothing.
+    places : mapping of str to SourceSpan, optional
+        Where those other values were written.
 
     Returns
     -------
@@ -108,7 +115,7 @@ def refusing_rules(
     Findings
         Closure, negative coefficients, parameters out of range, energy from nothing.
     """
-    bound, findings = bind(network, overrides)
+    bound, findings = bind(network, overrides, places)
     for rule in _REFUSING:
         findings.extend(rule(bound))
     if not findings.refused:

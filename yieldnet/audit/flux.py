@@ -15,7 +15,14 @@ if TYPE_CHECKING:
     from yieldnet.optimum.problem import Problem
     from yieldnet.optimum.proof import Optimiser
 
-__all__ = ["blocked_reactions", "closed_network", "energy_from_nothing", "energy_loop"]
+__all__ = [
+    "blocked_reactions",
+    "closed_network",
+    "energy_for_nothing",
+    "energy_from_nothing",
+    "energy_loop",
+    "tied_carriers",
+]
 
 _ZERO = Fraction(0)
 _ONE = Fraction(1)
@@ -105,6 +112,74 @@ def energy_from_nothing(bound: BoundNetwork, optimiser: Optimiser) -> Findings:
             hint="Make one of these reactions one-way, or correct its ATP.",
         )
     return findings
+
+
+def energy_for_nothing(bound: BoundNetwork, optimiser: Optimiser) -> Findings:
+    """Loops that spend an energy carrier for nothing; they let any surplus vanish."""
+    findings = Findings()
+    closed = closed_network(bound)
+    for item in bound.network.carriers:
+        if item.kind is not CarrierKind.ENERGY:
+            continue
+        column = f"surplus {item.name}"
+        problem = closed.with_columns({column: Bounds(-_ONE, _ZERO)})
+        answer = optimiser.optimise(problem, {column: _ONE}, maximise=False)
+        if answer.status is not Status.OPTIMAL or not answer.value:
+            continue
+        loop = [
+            f"{reaction.name}{' backwards' if answer[reaction.name] < 0 else ''}"
+            for reaction in bound.reactions
+            if answer[reaction.name]
+        ]
+        spans = [
+            reaction.span for reaction in bound.reactions if answer[reaction.name] and reaction.span
+        ]
+        findings.add(
+            "YN417",
+            f"{item.name} can be spent for nothing in the loop " + ", ".join(loop),
+            spans[0] if spans else None,
+            hint="With 'energy surplus: none' a case should knock one of these out.",
+            severity=Severity.NOTE,
+        )
+    return findings
+
+
+def tied_carriers(bound: BoundNetwork, optimiser: Optimiser) -> Findings:
+    """Redox carriers that turn into each other with nothing crossing, and what that costs."""
+    findings = Findings()
+    redox = [item for item in bound.network.carriers if item.kind is CarrierKind.REDOX]
+    energy = [item.name for item in bound.network.carriers if item.kind is CarrierKind.ENERGY]
+    free = closed_network(bound).with_columns({f"surplus {name}": FREE for name in energy})
+    for source in redox:
+        for target in redox:
+            same = dict(source.formula.elements) == dict(target.formula.elements)
+            if source is target or not same or source.formula.charge != target.formula.charge:
+                continue
+            # The source's balance gains one mol, the target's must give one up.
+            rows = {source.name: Bounds(-_ONE, -_ONE), target.name: Bounds(_ONE, _ONE)}
+            if any(not _has_row(free, name) for name in rows):
+                continue
+            costs = {f"surplus {name}": _ONE for name in energy}
+            answer = optimiser.optimise(free.with_rows(rows), costs)
+            if answer.status is Status.INFEASIBLE:
+                continue
+            words = "at no cost"
+            if answer.status is Status.OPTIMAL and answer.value < 0:
+                words = f"for {float(-answer.value):.3g} {' and '.join(energy)}"
+            elif answer.status is Status.OPTIMAL and answer.value > 0:
+                words = f"and makes {float(answer.value):.3g} {' and '.join(energy)}"
+            findings.add(
+                "YN418",
+                f"{source.name} can turn into {target.name} {words}",
+                source.span,
+                hint="Where that should not be, one of the reactions between them is too free.",
+                severity=Severity.NOTE,
+            )
+    return findings
+
+
+def _has_row(problem: Problem, name: str) -> bool:
+    return any(row.name == name for row in problem.rows)
 
 
 def blocked_reactions(bound: BoundNetwork, optimiser: Optimiser) -> Findings:

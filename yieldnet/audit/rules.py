@@ -179,7 +179,7 @@ def untouched_crossing(bound: BoundNetwork) -> Findings:
         findings.add(
             "YN410",
             reason,
-            bound.network.span,
+            dict(bound.network.crossing_spans).get(name, bound.network.span),
             hint="Write its reaction, or take it out of 'crossing'.",
             severity=Severity.WARNING,
         )
@@ -223,6 +223,7 @@ def negative_coefficients(bound: BoundNetwork) -> Findings:
     findings = Findings()
     network = bound.network
     values = {item.name: item.value for item in network.parameters}
+    places = {item.name: item.span for item in network.parameters}
     equations = [(item.name, item.equation, item.span) for item in network.reactions]
     if network.growth is not None:
         equations.append((GROWTH, network.growth.equation, network.growth.span))
@@ -238,7 +239,7 @@ def negative_coefficients(bound: BoundNetwork) -> Findings:
                     "YN210",
                     f"parameter {names[0]!r} is {values[names[0]]}, so the coefficient of"
                     f" {term.name!r} in {label!r} is negative",
-                    term.span or span,
+                    places[names[0]] or term.span or span,
                     hint="Give it a value of 0 or more, or move the compound to the other side.",
                 )
     return findings

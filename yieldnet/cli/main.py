@@ -16,7 +16,8 @@ _VERBS = {
     "audit": "What is wrong or doubtful in a network.",
     "compounds": "The compound and biomass library.",
     "networks": "The networks that ship with yieldnet.",
-    "explain": "What a finding code means and what to do.",
+    "explain": "What a word or a finding code means.",
+    "schema": "JSON Schema of the two files, for editors.",
 }
 
 

@@ -81,6 +81,9 @@ _ENTRIES = (
     CatalogueEntry("YN115", "Text begins with a question mark",
         "In YAML a leading ? starts something else, so the equation would be lost.",
         "Put the equation in double quotes."),
+    CatalogueEntry("YN116", "Reading stopped",
+        "A file with hundreds of findings is another kind of file, or holds one slip many times.",
+        "Mend the findings listed, then read it again."),
     # Numbers, units, formulas, equations
     CatalogueEntry("YN201", "Not a number",
         "Decimal commas, percentages and words can each be read in two ways.",
@@ -177,6 +180,12 @@ _ENTRIES = (
     CatalogueEntry("YN416", "What growth costs in ATP",
         "Shown so that it can be compared with published growth yields on ATP.",
         "Nothing, if the numbers are what you meant."),
+    CatalogueEntry("YN417", "Energy spent for nothing",
+        "A loop that only spends ATP lets any surplus vanish, so 'energy surplus: none' says nothing.",
+        "Knock one of its reactions out in the case where that matters."),
+    CatalogueEntry("YN418", "Redox carriers tied to each other",
+        "Where carriers turn into each other, keeping them apart in 'redox' costs little or nothing.",
+        "Nothing, if that is what the cell does; else make a reaction between them one-way."),
     # Cases
     CatalogueEntry("YN501", "Basis not clear",
         "Every yield is told per mol of the basis, the first compound on the left.",

@@ -31,8 +31,8 @@ MAX_DIGITS = 40
 MAX_EXPONENT = 30
 """Largest power of ten a written number may have [-]."""
 
-_NUMBER = re.compile(r"([+-]?)(\d*)(?:\.(\d*))?(?:[eE]([+-]?\d+))?")
-_RATIO = re.compile(r"([+-]?\d+)/(\d+)")
+_NUMBER = re.compile(r"([+-]?)(\d*)(?:\.(\d*))?(?:[eE]([+-]?\d+))?", re.ASCII)
+_RATIO = re.compile(r"([+-]?\d+)/(\d+)", re.ASCII)
 
 
 class NumberTextError(ValueError):

@@ -16,7 +16,7 @@ from yieldnet.foundation.catalogue import CATALOGUE
 if TYPE_CHECKING:
     from collections.abc import Iterable, Iterator
 
-__all__ = ["Finding", "Findings", "Severity", "SourceSpan", "near"]
+__all__ = ["Finding", "Findings", "Severity", "SourceSpan", "TooManyFindings", "near"]
 
 
 class Severity(StrEnum):
@@ -90,15 +90,32 @@ class Finding:
                 if self.left and self.right
                 else (f" ({self.left or self.right})")
             )
-        hint = f" {self.hint}" if self.hint else ""
+        hint = f". {self.hint}" if self.hint else ""
         return f"{place}{self.severity} {self.code}: {self.message}{sides}{hint}"
+
+
+class TooManyFindings(Exception):
+    """A file has so many mistakes that reading it further helps nobody."""
 
 
 @dataclass(slots=True)
 class Findings:
-    """A list of findings in the making; readers and rules add to it."""
+    """A list of findings in the making; readers and rules add to it.
+
+    Parameters
+    ----------
+    items : list of Finding
+        What was found so far.
+    limit : int or None
+        Most findings that are gathered; one more raises :class:`TooManyFindings` [-].
+    """
 
     items: list[Finding] = field(default_factory=list)
+    limit: int | None = None
+    _seen: set[Finding] = field(default_factory=set)
+
+    def __post_init__(self) -> None:
+        self._seen.update(self.items)
 
     def add(
         self,
@@ -121,14 +138,20 @@ class Findings:
             hint=hint,
             severity=severity,
         )
-        if finding not in self.items:
-            self.items.append(finding)
+        self._take(finding)
 
     def extend(self, findings: Iterable[Finding]) -> None:
         """Add several findings, leaving out those already there."""
         for finding in findings:
-            if finding not in self.items:
-                self.items.append(finding)
+            self._take(finding)
+
+    def _take(self, finding: Finding) -> None:
+        if finding in self._seen:
+            return
+        if self.limit is not None and len(self.items) >= self.limit:
+            raise TooManyFindings
+        self._seen.add(finding)
+        self.items.append(finding)
 
     def __iter__(self) -> Iterator[Finding]:
         return iter(self.items)

@@ -159,7 +159,10 @@ def read_unit(text: str) -> Unit:
         parts[0] = "1"
     for place, part in enumerate(parts):
         if part not in known and not (place == 0 and part == "1" and len(parts) > 1):
-            raise UnitError(f"unit {text.strip()!r} is not known", "Known: " + ", ".join(known))
+            hint = "Known: " + ", ".join(known) + "."
+            if "-1" in text:
+                hint = "Write powers as a slash: 1/h, mmol/g/h."
+            raise UnitError(f"unit {text.strip()!r} is not known", hint)
     return Unit(parts[0], tuple(parts[1:]))
 
 

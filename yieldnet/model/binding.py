@@ -115,7 +115,9 @@ def composition(formula: Formula) -> dict[str, Fraction]:
 
 
 def bind(
-    network: Network, overrides: Mapping[str, Fraction] | None = None
+    network: Network,
+    overrides: Mapping[str, Fraction] | None = None,
+    places: Mapping[str, SourceSpan] | None = None,
 ) -> tuple[BoundNetwork, Findings]:
     """Network with parameters put in and every ``?`` solved.
 
@@ -125,6 +127,8 @@ def bind(
         The network as written.
     overrides : mapping of str to Fraction, optional
         Other values of some parameters.
+    places : mapping of str to SourceSpan, optional
+        Where those other values were written.
 
     Returns
     -------
@@ -135,14 +139,17 @@ def bind(
         changed sides.
     """
     for name, value in (overrides or {}).items():
-        network = network.with_parameter(name, value)
+        network = network.with_parameter(name, value, (places or {}).get(name))
+    changed = places or {}
     parameters = {item.name: item.value for item in network.parameters}
     formulas = {item.name: item.formula for item in network.compounds}
     formulas.update({item.name: item.formula for item in network.carriers})
     findings = Findings()
     bound: list[BoundReaction] = []
     for item in network.reactions:
-        solved = _solve(item.name, item.equation, item.span, formulas, parameters, {}, findings)
+        solved = _solve(
+            item.name, item.equation, item.span, formulas, parameters, {}, findings, changed
+        )
         if solved is not None:
             bound.append(
                 BoundReaction(
@@ -155,7 +162,7 @@ def bind(
                 )
             )
     if network.growth is not None:
-        bound.extend(_bind_growth(network, formulas, parameters, findings))
+        bound.extend(_bind_growth(network, formulas, parameters, findings, changed))
     return (
         BoundNetwork(network=network, reactions=tuple(bound), formulas=tuple(formulas.items())),
         findings,
@@ -167,6 +174,7 @@ def _bind_growth(
     formulas: Mapping[str, Formula],
     parameters: Mapping[str, Fraction],
     findings: Findings,
+    places: Mapping[str, SourceSpan],
 ) -> list[BoundReaction]:
     growth = network.growth
     assert growth is not None
@@ -182,6 +190,7 @@ def _bind_growth(
         parameters,
         gram if growth.per_gram else {},
         findings,
+        places,
         scale,
     )
     if solved is None:
@@ -239,6 +248,7 @@ def _solve(
     parameters: Mapping[str, Fraction],
     fixed: Mapping[str, Fraction],
     findings: Findings,
+    places: Mapping[str, SourceSpan],
     scale: Fraction = Fraction(1),
 ) -> tuple[tuple[int, str, Fraction, bool], ...] | None:
     """Numbers of all terms, or ``None`` with a finding."""
@@ -252,7 +262,7 @@ def _solve(
             findings.add(
                 "YN207",
                 f"the coefficient {term.coefficient} of {term.name!r} in {name!r} divides by zero",
-                term.span or span,
+                _blamed(term, places) or term.span or span,
                 hint="Change the parameter values or the expression.",
             )
     if failed:
@@ -295,6 +305,15 @@ def _solve(
         if value:
             solved.append((sign, term.name, value, True))
     return tuple(solved)
+
+
+def _blamed(term: Term, places: Mapping[str, SourceSpan]) -> SourceSpan | None:
+    """Where a value used by a coefficient was changed, if it was."""
+    if isinstance(term.coefficient, Expression):
+        for name in term.coefficient.names():
+            if name in places:
+                return places[name]
+    return None
 
 
 def _number(

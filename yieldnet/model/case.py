@@ -209,6 +209,8 @@ class Case:
         Reactions or groups switched off.
     parameters : tuple of (str, Fraction)
         Other values of network parameters.
+    parameter_spans : tuple of (str, SourceSpan)
+        Where those were written.
     file : str
         Path as the user gave it.
     findings : tuple of Finding
@@ -235,12 +237,22 @@ class Case:
     energy_surplus_given: bool = False
     knock_outs: tuple[Named, ...] = ()
     parameters: tuple[tuple[str, Fraction], ...] = ()
+    parameter_spans: tuple[tuple[str, SourceSpan], ...] = field(
+        default=(), compare=False, repr=False
+    )
     file: str = field(default="", compare=False)
     findings: tuple[Finding, ...] = field(default=(), compare=False, repr=False)
     span: SourceSpan | None = field(default=None, compare=False, repr=False)
 
     def __repr__(self) -> str:
         return f"Case({self.title!r}: {self.equation})"
+
+    def _repr_html_(self) -> str:
+        """Title, equation and aim, for a notebook."""
+        from html import escape
+
+        aim = f"<br>{escape(str(self.aim))}" if self.aim else ""
+        return f"<p><b>{escape(self.title)}</b><br>{escape(str(self.equation))}{aim}</p>"
 
     def coefficient(self, name: str) -> OverallCoefficient | None:
         """Coefficient of the overall equation by compound."""

@@ -239,6 +239,8 @@ class Network:
         Energy for staying alive.
     file : str
         Path as the user gave it; empty if it came from no file.
+    crossing_spans : tuple of (str, SourceSpan)
+        Where each crossing compound was written.
     span : SourceSpan or None
         Top of the file.
     """
@@ -254,10 +256,25 @@ class Network:
     growth: Growth | None = None
     maintenance: Maintenance | None = None
     file: str = field(default="", compare=False)
+    crossing_spans: tuple[tuple[str, SourceSpan], ...] = field(
+        default=(), compare=False, repr=False
+    )
     span: SourceSpan | None = field(default=None, compare=False, repr=False)
 
     def __repr__(self) -> str:
         return f"Network({self.title!r}: {len(self.reactions)} reactions)"
+
+    def _repr_html_(self) -> str:
+        """Title and equations, for a notebook."""
+        from html import escape
+
+        rows = "".join(
+            f"<tr><td>{escape(item.name)}</td><td>{escape(str(item.equation))}</td>"
+            f"<td>{escape(item.group)}</td></tr>"
+            for item in self.reactions
+        )
+        heads = "<tr><th>reaction</th><th>equation</th><th>group</th></tr>"
+        return f"<p><b>{escape(self.title)}</b></p><table>{heads}{rows}</table>"
 
     def direction(self, name: str) -> Direction | None:
         """Which way a compound may cross; ``None`` for an inside compound."""
@@ -313,8 +330,8 @@ class Network:
             growth=None if GROWTH in gone else self.growth,
         )
 
-    def with_parameter(self, name: str, value: Fraction) -> Network:
-        """The network with another value of one parameter.
+    def with_parameter(self, name: str, value: Fraction, span: SourceSpan | None = None) -> Network:
+        """The network with another value of one parameter, written elsewhere if a span says so.
 
         Raises
         ------
@@ -326,7 +343,7 @@ class Network:
         return replace(
             self,
             parameters=tuple(
-                replace(item, value=value) if item.name == name else item
+                replace(item, value=value, span=span or item.span) if item.name == name else item
                 for item in self.parameters
             ),
         )

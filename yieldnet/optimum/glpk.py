@@ -11,7 +11,13 @@ if TYPE_CHECKING:
 
     from yieldnet.optimum.problem import Bounds, Problem
 
-__all__ = ["GlpkEngine", "GlpkSession"]
+__all__ = ["MAX_ITERATIONS", "MAX_MILLISECONDS", "GlpkEngine", "GlpkSession"]
+
+MAX_ITERATIONS = 50_000
+"""Most float pivots; badly scaled numbers can make them go round in circles, and exact pivots go
+on from wherever they stopped [-]."""
+MAX_MILLISECONDS = 5_000
+"""Longest float solve, for the same reason [ms]."""
 
 
 class GlpkEngine:
@@ -57,6 +63,8 @@ class GlpkSession:
         glpk.glp_init_smcp(self._control)
         self._control.msg_lev = glpk.GLP_MSG_OFF
         self._control.meth = glpk.GLP_PRIMAL
+        self._control.it_lim = MAX_ITERATIONS
+        self._control.tm_lim = MAX_MILLISECONDS
         self._columns: list[Bounds | None] = [None] * len(problem.columns)
         self._rows: list[Bounds | None] = [None] * len(problem.rows)
         self._objective: Mapping[int, float] = {}

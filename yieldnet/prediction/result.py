@@ -302,6 +302,17 @@ class Prediction:
             best += f" {float(self.aim.value):.4g} mol/mol"
         return f"Prediction({self.case.title!r}: {self.outcome}{best})"
 
+    def _repr_html_(self) -> str:
+        """Title, ladder and coefficients, for a notebook."""
+        from html import escape
+
+        parts = [f"<p><b>{escape(self.case.title)}</b>: {self.outcome}</p>"]
+        if self.ladder:
+            parts.append(self.ladder_table().to_html(na_rep="", float_format="{:.4g}".format))
+        if self.coefficients:
+            parts.append(self.coefficient_table().to_html(na_rep="", float_format="{:.4g}".format))
+        return "".join(parts)
+
     def best_yield_mol_per_mol(self) -> float:
         """Best value of the aim [mol/mol basis].
 

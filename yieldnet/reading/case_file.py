@@ -10,42 +10,24 @@ from typing import TYPE_CHECKING
 from yieldnet.chemistry.formula import Formula, FormulaTextError, read_formula
 from yieldnet.chemistry.library import find_biomass, find_compound, library_names
 from yieldnet.foundation.exact import WrittenNumber
-from yieldnet.foundation.findings import Findings, Severity, near
-from yieldnet.foundation.units import (
-    Unit,
-    UnitError,
-    per_hour,
-    specific_rate_mol_per_gram_hour,
-    yield_factor,
-)
-from yieldnet.model.case import (
-    BAND,
-    Aim,
-    AimDirection,
-    Case,
-    Condition,
-    Demand,
-    EnergySurplus,
-    Measurement,
-    Named,
-    OverallCoefficient,
-)
+from yieldnet.foundation.findings import Findings, Severity, TooManyFindings, near
+from yieldnet.model.case import Case, EnergySurplus, Named, OverallCoefficient
 from yieldnet.model.equation import Unknown
-from yieldnet.model.network import CarrierKind, Compound, Direction
+from yieldnet.model.network import Compound, Direction
+from yieldnet.reading.case_statements import StatementReader
 from yieldnet.reading.equations import read_equation
-from yieldnet.reading.fields import Fields, entries, number, text, text_list
+from yieldnet.reading.fields import Fields, entries, number, text, text_list, unsplit_pairs
 from yieldnet.reading.names import NameBook
 from yieldnet.reading.network_file import load_network
 from yieldnet.reading.nodes import Kind, Node, compose
-from yieldnet.reading.quantities import read_quantity, read_range
 from yieldnet.reading.shipped import find_shipped, shipped_names
-from yieldnet.reading.source import read_text
+from yieldnet.reading.source import MAX_FINDINGS, near_file, read_text, too_many
 
 if TYPE_CHECKING:
     from collections.abc import Callable, Mapping
 
     from yieldnet.foundation.findings import SourceSpan
-    from yieldnet.model.equation import Equation
+    from yieldnet.model.equation import Equation, Term
     from yieldnet.model.network import Network
 
     NetworkLoader = Callable[[str], tuple[Network | None, Findings]]
@@ -69,7 +51,6 @@ CASE_KEYS = (
     "parameters",
 )
 """Keys of a case file."""
-_CONDITIONS = ("growth rate", "substrate uptake", "temperature")
 _LOADERS: Mapping[str, NetworkLoader] = {".yaml": load_network, ".yml": load_network}
 
 
@@ -92,28 +73,35 @@ def load_case(
     Findings
         Everything wrong or doubtful, in the case and in its network.
     """
-    findings = Findings()
+    findings = Findings(limit=MAX_FINDINGS)
+    try:
+        case = _load(path, loaders, findings)
+    except TooManyFindings:
+        findings.items.append(too_many(path))
+        return None, findings
+    if case is None or findings.refused:
+        return None, findings
+    return replace(case, findings=findings.sorted()), findings
+
+
+def _load(path: str, loaders: Mapping[str, NetworkLoader], findings: Findings) -> Case | None:
     source = read_text(path, findings)
-    if source is None:
-        return None, findings
-    root = compose(source, path, findings)
+    root = compose(source, path, findings) if source is not None else None
     if root is None:
-        return None, findings
+        return None
     if root.kind is not Kind.MAPPING:
         entries(root, "the file", findings)
-        return None, findings
-    if any(key.text in {"reactions", "crossing"} for key, _ in root.pairs):
+        return None
+    keys = {key.text for key, _ in root.pairs}
+    if keys & {"reactions", "crossing"} and "equation" not in keys:
         findings.add(
             "YN113",
             "this is a network file, and a case is wanted here",
             root.span,
             hint="Give a case file; its line 'network:' names this one.",
         )
-        return None, findings
-    case = _Reader(root, path, findings, loaders).case()
-    if case is None or findings.refused:
-        return None, findings
-    return replace(case, findings=findings.sorted()), findings
+        return None
+    return _Reader(root, path, findings, loaders).case()
 
 
 @dataclass(slots=True)
@@ -146,10 +134,20 @@ class _Reader:
         self._either_side(fields.get("either side"))
         if equation is not None and self.basis is not None:
             self._crossing_allowed()
-        conditions = self._conditions(fields.get("conditions"))
-        measured = self._measured(fields.get("measured"))
-        demands = self._demands(fields.get("demands"))
-        aim = self._aim(fields.get("aim"))
+        reader = StatementReader(
+            fields=fields,
+            book=self.book,
+            findings=self.findings,
+            network=self.network,
+            basis=self.basis or Compound(name="", formula=Formula(())),
+            known=self.basis is not None,
+            coefficients=self.coefficients,
+            compound=self._compound,
+        )
+        conditions = reader.conditions(fields.get("conditions"))
+        measured = reader.measured(fields.get("measured"))
+        demands = reader.demands(fields.get("demands"))
+        aim = reader.aim(fields.get("aim"))
         surplus = self._surplus(fields.get("energy surplus"))
         strain = self._strain(fields.get("strain"))
         knock_outs = self._knock_outs(fields.get("knock-outs"), strain)
@@ -174,7 +172,8 @@ class _Reader:
             energy_surplus=surplus or EnergySurplus.LOST,
             energy_surplus_given=surplus is not None,
             knock_outs=knock_outs,
-            parameters=parameters,
+            parameters=tuple((name, value) for name, value, _ in parameters),
+            parameter_spans=tuple((name, span) for name, _, span in parameters),
             file=self.path,
             span=self.root.span,
         )
@@ -201,7 +200,7 @@ class _Reader:
         if shipped is not None:
             network, findings = load_network(str(shipped))
         else:
-            if not beside.exists():
+            if not _exists(beside):
                 self.book.accept_all = True
                 self.findings.add(
                     "YN513",
@@ -209,6 +208,7 @@ class _Reader:
                     node.span,
                     left=f"looked for {beside}",
                     hint=near(Path(written).stem, shipped_names())
+                    or near_file(beside)
                     or "The path counts from the folder of the case file.",
                 )
                 return
@@ -220,6 +220,7 @@ class _Reader:
         self.network = network
         self.book.use_library = False
         self.book.own.update({item.name: item for item in network.compounds})
+        self.book.inside = frozenset(item.name for item in network.carriers)
 
     def _own_compounds(self, node: Node | None) -> None:
         if node is None:
@@ -232,8 +233,16 @@ class _Reader:
                 hint="Define the compound in the network file.",
             )
             return
-        for key, value in entries(node, "'compounds'", self.findings):
+        for key, value in unsplit_pairs(node, "'compounds'", self.findings, library_names()):
             label = f"compound {key.text!r}"
+            twin = self.book.twin(key.text)
+            if twin is not None:
+                self.findings.add(
+                    "YN303",
+                    f"{key.text!r} and {twin!r} are two names of one compound",
+                    key.span,
+                    hint="Define it once, and use one name throughout the file.",
+                )
             ash: WrittenNumber | None = None
             if value.kind is Kind.MAPPING:
                 inner = Fields(value, label, ("formula", "ash", "about"), self.findings)
@@ -250,11 +259,14 @@ class _Reader:
             else:
                 value_node = value
             formula = self._formula(value_node, label) if value_node else None
-            self.book.own[key.text] = None
+            self.book.define(key.text, None, key.span)
             if formula is None:
                 continue
             entry = find_compound(key.text)
-            if entry and dict(entry.formula.elements) != dict(formula.elements):
+            if entry and (
+                dict(entry.formula.elements) != dict(formula.elements)
+                or entry.formula.charge != formula.charge
+            ):
                 self.findings.add(
                     "YN304",
                     f"{key.text!r} has another formula in the compound library",
@@ -289,7 +301,7 @@ class _Reader:
         if written is None:
             return None
         equation = read_equation(
-            written, node.span, "overall equation", self.findings, self.book.resolve
+            written, node.span, "overall equation", self.findings, self.book.resolve, node.locate
         )
         if equation is None:
             return None
@@ -302,7 +314,7 @@ class _Reader:
                 hint="Write ->; list a compound under 'either side' if its side is not known.",
             )
         basis, *others = equation.terms()
-        self._take_basis(basis[1].name, str(basis[1].coefficient), basis[1].coefficient, node)
+        self._take_basis(basis[1], node)
         for sign, term in others:
             side = Direction.CONSUMED if sign < 0 else Direction.PRODUCED
             if self.basis is not None and term.name == self.basis.name:
@@ -334,9 +346,11 @@ class _Reader:
             self._list(term.name, side, written_number, node.span)
         return equation
 
-    def _take_basis(self, name: str, shown: str, coefficient: object, node: Node) -> None:
+    def _take_basis(self, term: Term, node: Node) -> None:
+        name, coefficient = term.name, term.coefficient
         self.basis = self._compound(name)
         exact_one = isinstance(coefficient, WrittenNumber) and coefficient.value == 1
+        shown = coefficient.text if isinstance(coefficient, WrittenNumber) else str(coefficient)
         if not exact_one:
             self.findings.add(
                 "YN501",
@@ -405,264 +419,6 @@ class _Reader:
                     hint="A case may narrow the network's directions, not widen them:"
                     " move the compound, or change 'crossing' of the network.",
                 )
-
-    def _conditions(self, node: Node | None) -> dict[str, Condition]:
-        found: dict[str, Condition] = {}
-        if node is None:
-            return found
-        Fields(node, "'conditions'", _CONDITIONS, self.findings)
-        for key, value in node.pairs:
-            if key.text not in _CONDITIONS:
-                continue
-            written = text(value, f"condition {key.text!r}", self.findings)
-            quantity = (
-                read_quantity(written, value.span, key.text, self.findings) if written else None
-            )
-            if quantity is None or written is None:
-                continue
-            try:
-                shift, factor = self._condition_factor(key.text, quantity.unit)
-            except UnitError as error:
-                self.findings.add(
-                    error.code, f"{key.text}: {error.reason}", value.span, hint=error.hint
-                )
-                continue
-            amount = quantity.number.value * factor + shift
-            if key.text != "temperature" and amount <= 0:
-                self.findings.add(
-                    "YN210",
-                    f"{key.text} {quantity.number.text} is not positive",
-                    value.span,
-                    hint="Leave the condition out if it is not known.",
-                )
-                continue
-            found[key.text] = Condition(
-                value=amount,
-                sd=quantity.sd * factor if quantity.sd else None,
-                text=written,
-                span=value.span,
-            )
-        if "growth rate" in found and self.network is not None and self.network.growth is None:
-            self.findings.add(
-                "YN510",
-                "a growth rate is given, and the network has no 'growth'",
-                found["growth rate"].span,
-                hint="Add 'growth' to the network, or leave the growth rate out.",
-            )
-        return found
-
-    def _condition_factor(self, name: str, unit: Unit | None) -> tuple[Fraction, Fraction]:
-        """Shift and factor to 1/h, mol/g/h or degC."""
-        if unit is None:
-            wanted = {"growth rate": "1/h", "substrate uptake": "mmol/g/h"}.get(name, "degC")
-            raise UnitError("the unit is missing", f"Write it in {wanted}.")
-        if name == "growth rate":
-            return Fraction(0), per_hour(unit)
-        if name == "substrate uptake":
-            weight = (self.basis or Compound(name="the basis", formula=Formula(()))).weight
-            return Fraction(0), specific_rate_mol_per_gram_hour(unit, weight)
-        if str(unit) == "degC":
-            return Fraction(0), Fraction(1)
-        if str(unit) == "K":
-            return Fraction("-273.15"), Fraction(1)
-        raise UnitError(f"'{unit}' is not a temperature", "Write it in degC or K.")
-
-    def _own_coefficient(self, key: Node, what: str) -> str | None:
-        """Name of a coefficient that a statement speaks of, or ``None`` with a finding."""
-        name = self.book.resolve(key.text, key.span)
-        if name is None or self.basis is None:
-            return None
-        if name == self.basis.name:
-            self.findings.add(
-                "YN503",
-                f"{what} {name!r} speaks of the basis, whose coefficient is 1",
-                key.span,
-                hint="State another coefficient.",
-            )
-            return None
-        if name not in self.coefficients:
-            self.findings.add(
-                "YN503",
-                f"{what} {key.text!r} is not in the overall equation",
-                key.span,
-                hint=near(key.text, self.coefficients)
-                or f"Add '+ ? {name}' to the equation, or leave this out.",
-            )
-            return None
-        return name
-
-    def _yield(self, name: str, unit: Unit | None) -> Fraction:
-        basis = self.basis
-        assert basis is not None
-        weight = self._compound(name).weight
-        return yield_factor(unit or Unit("mol", ("mol",)), weight, basis.weight)
-
-    def _measured(self, node: Node | None) -> tuple[Measurement, ...]:
-        found: dict[str, Measurement] = {}
-        for key, value in entries(node, "'measured'", self.findings) if node else ():
-            name = self._own_coefficient(key, "measured")
-            written = text(value, f"measured {key.text!r}", self.findings)
-            if written is None:
-                continue
-            quantity = read_quantity(written, value.span, f"measured {key.text}", self.findings)
-            if quantity is None or name is None:
-                continue
-            try:
-                factor = self._yield(name, quantity.unit)
-            except UnitError as error:
-                self.findings.add(
-                    error.code, f"measured {key.text}: {error.reason}", value.span, hint=error.hint
-                )
-                continue
-            if name in found:
-                self.findings.add(
-                    "YN504",
-                    f"{name!r} is measured twice",
-                    key.span,
-                    left=f"first {found[name].text}",
-                    right=f"again {written}",
-                    hint="Keep one, or give their weighted mean.",
-                )
-                continue
-            exact = self.coefficients[name].written
-            if exact is not None and exact.last_place is None:
-                self.findings.add(
-                    "YN504",
-                    f"{name!r} is measured, and the equation fixes it",
-                    key.span,
-                    left=f"equation {exact.text}",
-                    right=f"measured {written}",
-                    hint="Write ? in the equation.",
-                )
-                continue
-            reach = quantity.number.value + BAND * (quantity.sd or 0)
-            if reach < 0 and self.coefficients[name].side is not Direction.EITHER:
-                self.findings.add(
-                    "YN210",
-                    f"measured {key.text} {written} is negative beyond its error",
-                    value.span,
-                    left=f"positive means {self.coefficients[name].side}",
-                    hint="Write its size, or list the compound under 'either side'.",
-                )
-                continue
-            found[name] = Measurement(
-                compound=name,
-                value=quantity.number.value * factor,
-                sd=quantity.sd * factor if quantity.sd else None,
-                text=written,
-                label=f"measured {name}",
-                unit=str(quantity.unit or "mol/mol"),
-                factor=factor,
-                span=key.span,
-            )
-        return tuple(found.values())
-
-    def _demands(self, node: Node | None) -> tuple[Demand, ...]:
-        found: dict[str, Demand] = {}
-        for key, value in entries(node, "'demands'", self.findings) if node else ():
-            name = self._own_coefficient(key, "demand")
-            written = text(value, f"demand {key.text!r}", self.findings)
-            if written is None:
-                continue
-            bounds = read_range(written, value.span, f"demand {key.text}", self.findings)
-            if bounds is None or name is None:
-                continue
-            try:
-                factor = self._yield(name, bounds.unit)
-            except UnitError as error:
-                self.findings.add(
-                    error.code, f"demand {key.text}: {error.reason}", value.span, hint=error.hint
-                )
-                continue
-            if name in found:
-                self.findings.add(
-                    "YN504",
-                    f"{name!r} is demanded twice",
-                    key.span,
-                    hint="Write one range: 0.05 to 0.30.",
-                )
-                continue
-            high = bounds.high.value if bounds.high else None
-            if (
-                high is not None
-                and high < 0
-                and self.coefficients[name].side is not Direction.EITHER
-            ):
-                self.findings.add(
-                    "YN210",
-                    f"demand {key.text} {written} asks for a negative amount",
-                    value.span,
-                    left=f"positive means {self.coefficients[name].side}",
-                    hint="Write its size, or list the compound under 'either side'.",
-                )
-                continue
-            found[name] = Demand(
-                compound=name,
-                low=bounds.low.value * factor if bounds.low else None,
-                high=bounds.high.value * factor if bounds.high else None,
-                text=written,
-                unit=str(bounds.unit or "mol/mol"),
-                factor=factor,
-                span=key.span,
-            )
-        return tuple(found.values())
-
-    def _aim(self, node: Node | None) -> Aim | None:
-        written = text(node, "'aim'", self.findings) if node else None
-        if node is None or written is None:
-            return None
-        word, _, rest = written.partition(" ")
-        rest = rest.strip()
-        if word not in set(AimDirection) or not rest:
-            self.findings.add(
-                "YN112",
-                f"the aim {written!r} is not understood",
-                node.span,
-                left="expected 'most ...' or 'least ...'",
-                hint="Write 'most succinate'.",
-            )
-            return None
-        direction = AimDirection(word)
-        carriers = self.network.carriers if self.network else ()
-        energy = [item.name for item in carriers if item.kind is CarrierKind.ENERGY]
-        if rest in energy and self.fields.get("energy surplus") is not None:
-            surplus = self.fields.get("energy surplus")
-            if surplus is not None and surplus.text == EnergySurplus.NONE:
-                self.findings.add(
-                    "YN515",
-                    f"the aim is spare {rest}, and 'energy surplus: none' says there is none",
-                    node.span,
-                    hint="Leave 'energy surplus' out, or take another aim.",
-                )
-        if rest in energy:
-            if direction is AimDirection.LEAST:
-                self.findings.add(
-                    "YN503",
-                    f"the least {rest} is no question: what is made can be wasted",
-                    node.span,
-                    hint=f"Write 'most {rest}'.",
-                )
-            return Aim(direction=direction, compound=rest, is_energy=True, span=node.span)
-        name = self.book.resolve(rest, node.span)
-        if name is None or self.basis is None:
-            return None
-        if name == self.basis.name:
-            self.findings.add(
-                "YN502",
-                f"the aim is the basis {name!r} itself, whose coefficient is 1",
-                node.span,
-                hint="Aim at another coefficient, or take another compound as basis.",
-            )
-            return None
-        if name not in self.coefficients:
-            self.findings.add(
-                "YN503",
-                f"the aim {rest!r} is not in the overall equation",
-                node.span,
-                hint=near(rest, self.coefficients) or f"Add '+ ? {name}' to the equation.",
-            )
-            return None
-        return Aim(direction=direction, compound=name, span=node.span)
 
     def _surplus(self, node: Node | None) -> EnergySurplus | None:
         written = text(node, "'energy surplus'", self.findings) if node else None
@@ -748,8 +504,8 @@ class _Reader:
                 )
         return tuple(found.values())
 
-    def _parameters(self, node: Node | None) -> tuple[tuple[str, Fraction], ...]:
-        found: list[tuple[str, Fraction]] = []
+    def _parameters(self, node: Node | None) -> tuple[tuple[str, Fraction, SourceSpan], ...]:
+        found: list[tuple[str, Fraction, SourceSpan]] = []
         if node is None:
             return ()
         self._needs_network("parameters", node)
@@ -767,5 +523,12 @@ class _Reader:
                 continue
             if written is None:
                 continue
-            found.append((key.text, written.value))
+            found.append((key.text, written.value, key.span))
         return tuple(found)
+
+
+def _exists(path: Path) -> bool:
+    try:
+        return path.exists()
+    except OSError:
+        return False

@@ -35,6 +35,7 @@ def read_equation(
     label: str,
     findings: Findings,
     resolve: Callable[[str, SourceSpan], str | None] = lambda name, _: name,
+    locate: Callable[[str], SourceSpan] | None = None,
 ) -> Equation | None:
     """Equation from its text, or ``None`` with findings.
 
@@ -50,6 +51,8 @@ def read_equation(
         Receives what is wrong.
     resolve : callable
         Turns a compound name as written into the name used everywhere, or reports it.
+    locate : callable, optional
+        Finds the place of a term in a text of several lines.
 
     Returns
     -------
@@ -90,7 +93,8 @@ def read_equation(
             return None
         terms: list[Term] = []
         for piece in pieces if part else []:
-            term = _read_term(piece, span, label, findings, resolve)
+            place = locate(piece) if locate is not None else span
+            term = _read_term(piece, place, label, findings, resolve)
             if term is None:
                 whole = False
             else:
@@ -171,7 +175,11 @@ def _read_term(
     if not name:
         refuse(f"{piece[:_SHORT]!r} names no compound", "Write a compound after the coefficient.")
         return None
-    if "+" in name.split() or name.startswith(("+", "?")):
+    words = name.split()
+    glued = any(word.startswith("+") for word in words) or any(
+        word.endswith("+") for word in words[:-1]
+    )
+    if glued or name.startswith("?"):
         refuse(f"{name[:_SHORT]!r} is no compound name", "Put one space on either side of each +.")
         return None
     known = resolve(name, span)

@@ -125,7 +125,13 @@ class _Reader:
             return Negation(self.part(depth + 1))
         if token == "(":
             tree = self.total(depth + 1)
-            if self.take() != ")":
+            closing = self.take()
+            if closing and closing != ")":
+                raise ExpressionTextError(
+                    f"{self.whole!r} has {closing!r} where an operator belongs",
+                    "Only numbers, parameters, + - * / and parentheses are understood.",
+                )
+            if not closing:
                 raise ExpressionTextError(f"{self.whole!r} has a parenthesis that never closes")
             return tree
         if token and (token[0].isdigit() or token[0] == "."):

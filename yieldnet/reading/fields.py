@@ -14,7 +14,10 @@ if TYPE_CHECKING:
 
     from yieldnet.foundation.findings import SourceSpan
 
-__all__ = ["Fields", "entries", "number", "text", "text_list"]
+__all__ = ["MAX_COMMAS", "Fields", "entries", "number", "text", "text_list", "unsplit_pairs"]
+
+MAX_COMMAS = 4
+"""Most commas in a compound name that a split is looked for: 1,2,3,4-tetra... [-]."""
 
 _ARTICLE = {Kind.TEXT: "a text", Kind.LIST: "a list", Kind.MAPPING: "a mapping (name: value)"}
 
@@ -24,6 +27,8 @@ def _shape(node: Node) -> str:
 
 
 def _wrong(node: Node, label: str, wanted: str, findings: Findings) -> None:
+    if node.broken:
+        return
     hint = "Leave the entry out if there is nothing to say." if node.empty else ""
     findings.add(
         "YN112",
@@ -37,7 +42,7 @@ def _wrong(node: Node, label: str, wanted: str, findings: Findings) -> None:
 
 def text(node: Node, label: str, findings: Findings) -> str | None:
     """Text of a node, or ``None`` with a finding."""
-    if node.kind is not Kind.TEXT or node.empty:
+    if node.kind is not Kind.TEXT or node.empty or node.broken:
         _wrong(node, label, "a text", findings)
         return None
     return node.text
@@ -45,7 +50,7 @@ def text(node: Node, label: str, findings: Findings) -> str | None:
 
 def number(node: Node, label: str, findings: Findings) -> WrittenNumber | None:
     """Number of a node, or ``None`` with a finding."""
-    if node.kind is not Kind.TEXT or node.empty:
+    if node.kind is not Kind.TEXT or node.empty or node.broken:
         _wrong(node, label, "a number", findings)
         return None
     try:
@@ -92,23 +97,47 @@ def text_list(
     folded = {name.casefold(): name for name in known}
     if node.flow:
         for place in range(len(node.items) - 1):
-            pair = node.items[place : place + 2]
-            joined = ",".join(item.text for item in pair)
-            if joined.casefold() in folded:
-                split.update((place, place + 1))
-                findings.add(
-                    "YN114",
-                    f"the comma splits the name {joined!r} in two",
-                    pair[0].span,
-                    left=f"{pair[0].text!r} and {pair[1].text!r}",
-                    hint=f'Write one name a line with a dash before it, or quote it: "{joined}".',
-                )
+            for count in range(2, MAX_COMMAS + 2):
+                parts = node.items[place : place + count]
+                joined = ",".join(item.text for item in parts)
+                if len(parts) == count and joined.casefold() in folded:
+                    split.update(range(place, place + count))
+                    _split_name(joined, parts, findings, "a dash before it")
     for place, item in enumerate(node.items):
         if place in split:
             continue
         if text(item, f"an entry of {label}", findings) is not None:
             kept.append(item)
     return tuple(kept)
+
+
+def _split_name(joined: str, parts: Sequence[Node], findings: Findings, how: str) -> None:
+    findings.add(
+        "YN114",
+        f"a comma splits the name {joined!r}",
+        parts[0].span,
+        left=" and ".join(repr(item.text) for item in parts),
+        hint=f'Write one name a line with {how}, or quote it: "{joined}".',
+    )
+
+
+def unsplit_pairs(
+    node: Node, label: str, findings: Findings, known: Sequence[str]
+) -> tuple[tuple[Node, Node], ...]:
+    """Pairs of a mapping; a name in braces that its commas have split is reported and left out."""
+    pairs = entries(node, label, findings)
+    if not node.flow:
+        return pairs
+    folded = {name.casefold() for name in known}
+    gone: set[int] = set()
+    for place in range(len(pairs) - 1):
+        for count in range(2, MAX_COMMAS + 2):
+            keys = [key for key, _ in pairs[place : place + count]]
+            joined = ",".join(key.text for key in keys)
+            if len(keys) == count and joined.casefold() in folded:
+                gone.update(range(place, place + count))
+                _split_name(joined, keys, findings, "a colon behind it")
+    return tuple(pair for place, pair in enumerate(pairs) if place not in gone)
 
 
 @dataclass(slots=True)

@@ -29,6 +29,8 @@ class NameBook:
         Names the file (or its network) defines; ``None`` for a carrier.
     use_library : bool
         Whether a name that is not defined may come from the library.
+    inside : frozenset of str
+        Carriers of the network, which a case cannot list.
     accept_all : bool
         Whether unknown names pass silently, because what would define them could not be read.
     """
@@ -37,8 +39,24 @@ class NameBook:
     own: dict[str, Compound | None] = field(default_factory=dict)
     use_library: bool = True
     accept_all: bool = False
+    inside: frozenset[str] = frozenset()
     taken: dict[str, Compound] = field(default_factory=dict)
+    _told: set[tuple[str, str]] = field(default_factory=set)
     _spelling: dict[str, tuple[str, SourceSpan]] = field(default_factory=dict)
+
+    def define(self, name: str, compound: Compound | None, span: SourceSpan) -> None:
+        """Take a name that the file defines; its spelling counts from there."""
+        self.own[name] = compound
+        self._spelling.setdefault(name, (name, span))
+
+    def twin(self, name: str) -> str | None:
+        """Other name of the file for the same library compound, if there is one."""
+        entry = find_compound(name)
+        if entry is None:
+            return None
+        return next(
+            (other for other in self.own if other != name and find_compound(other) is entry), None
+        )
 
     def resolve(self, word: str, span: SourceSpan) -> str | None:
         """Name used everywhere for a word, or ``None`` with a finding."""
@@ -46,13 +64,20 @@ class NameBook:
         if name is None:
             if self.accept_all:
                 return word
-            entry = None if self.use_library else find_compound(word)
-            if entry is not None:
+            if word in self.inside:
                 self.findings.add(
-                    "YN301",
-                    f"compound {word!r} is in the library, but not in this network",
+                    "YN505",
+                    f"{word!r} is a carrier and cannot cross the cell boundary",
                     span,
-                    hint="Add reactions with it to the network, or leave it out.",
+                    hint="Leave it out; 'aim: most ATP' asks for what is left over.",
+                )
+                return None
+            if not self.use_library and find_compound(word) is not None:
+                self.findings.add(
+                    "YN505",
+                    f"{word!r} is in the library, but not in this network",
+                    span,
+                    hint=near(word, self.own) or "Add reactions with it to the network.",
                 )
                 return None
             self.findings.add(
@@ -63,7 +88,8 @@ class NameBook:
             )
             return None
         spelled, first = self._spelling.setdefault(name, (word, span))
-        if spelled != word:
+        if spelled != word and (name, word) not in self._told:
+            self._told.add((name, word))
             self.findings.add(
                 "YN303",
                 f"{name!r} is written under two names",

@@ -13,7 +13,8 @@ from yieldnet.chemistry.library import (
     find_compound,
     library_names,
 )
-from yieldnet.foundation.findings import Findings, near
+from yieldnet.foundation.exact import WrittenNumber
+from yieldnet.foundation.findings import Findings, TooManyFindings, near
 from yieldnet.foundation.units import UnitError, Weight, specific_rate_mol_per_gram_hour
 from yieldnet.model.expression import Expression
 from yieldnet.model.network import (
@@ -31,18 +32,20 @@ from yieldnet.model.network import (
     Strain,
 )
 from yieldnet.reading.equations import read_equation
-from yieldnet.reading.fields import Fields, entries, number, text, text_list
+from yieldnet.reading.fields import Fields, entries, number, text, text_list, unsplit_pairs
 from yieldnet.reading.names import NameBook
 from yieldnet.reading.nodes import Kind, Node, compose
 from yieldnet.reading.quantities import read_quantity
-from yieldnet.reading.source import read_text
+from yieldnet.reading.source import MAX_FINDINGS, read_text, too_many
 
 if TYPE_CHECKING:
     from yieldnet.foundation.findings import SourceSpan
-    from yieldnet.model.equation import Equation
+    from yieldnet.model.equation import Equation, Term
 
-__all__ = ["NETWORK_KEYS", "load_network", "parse_network"]
+__all__ = ["MAX_CHARGE", "NETWORK_KEYS", "load_network", "parse_network"]
 
+MAX_CHARGE = 50
+"""Largest charge of a compound; beyond it is a slip [-]."""
 NETWORK_KEYS = (
     "network",
     "about",
@@ -98,14 +101,18 @@ def parse_network(source: str, path: str = "") -> tuple[Network | None, Findings
     Findings
         Everything wrong or doubtful.
     """
-    findings = Findings()
-    root = compose(source, path, findings)
+    findings = Findings(limit=MAX_FINDINGS)
+    try:
+        root = compose(source, path, findings)
+    except TooManyFindings:
+        findings.items.append(too_many(path))
+        root = None
     if root is None:
         return None, findings
     if root.kind is not Kind.MAPPING:
         entries(root, "the file", findings)
         return None, findings
-    if any(key.text in {"case", "equation"} for key, _ in root.pairs):
+    if any(key.text in {"case", "equation", "aim"} for key, _ in root.pairs):
         findings.add(
             "YN113",
             "this is a case file, and a network is wanted here",
@@ -113,7 +120,11 @@ def parse_network(source: str, path: str = "") -> tuple[Network | None, Findings
             hint="Give the network file, or give this file where a case is wanted.",
         )
         return None, findings
-    network = _Reader(root, path, findings).network()
+    try:
+        network = _Reader(root, path, findings).network()
+    except TooManyFindings:
+        findings.items.append(too_many(path))
+        network = None
     return (None if findings.refused else network), findings
 
 
@@ -128,7 +139,7 @@ class _Reader:
     carriers: list[Carrier] = field(default_factory=list)
     own: list[Compound] = field(default_factory=list)
     parameters: list[Parameter] = field(default_factory=list)
-    used: dict[str, None] = field(default_factory=dict)
+    crossing_spans: dict[str, SourceSpan] = field(default_factory=dict)
 
     def __post_init__(self) -> None:
         self.book = NameBook(self.findings)
@@ -140,12 +151,15 @@ class _Reader:
         self._carriers(fields.get("carriers"))
         self._compounds(fields.get("compounds"))
         biomass = self._biomass(fields.get("growth"))
-        crossing = self._crossing(
-            fields.need("crossing", "Say which compounds cross the cell: in, out, either.")
+        crossing_node = fields.need(
+            "crossing", "Say which compounds cross the cell: in, out, either."
         )
+        crossing = self._crossing(crossing_node)
         reactions = self._reactions(fields.need("reactions", "Write at least one reaction."))
         growth = self._growth(fields.get("growth"), biomass)
-        if biomass is not None and BIOMASS not in dict(crossing):
+        inside = {item.name for item in self.carriers}
+        allowed = crossing_node is None or BIOMASS in dict(crossing) or BIOMASS in inside
+        if biomass is not None and not allowed:
             self.findings.add(
                 "YN305",
                 "growth makes 'biomass', which does not cross the cell boundary",
@@ -168,8 +182,13 @@ class _Reader:
             growth=growth,
             maintenance=maintenance,
             file=self.path,
+            crossing_spans=tuple(self.crossing_spans.items()),
             span=self.root.span,
         )
+
+    def root_has(self, key: str) -> bool:
+        """Whether the file has a section."""
+        return any(name.text == key for name, _ in self.root.pairs)
 
     def _parameters(self, node: Node | None) -> None:
         for key, value in entries(node, "'parameters'", self.findings) if node else ():
@@ -230,6 +249,14 @@ class _Reader:
         for key, value in entries(node, "'carriers'", self.findings) if node else ():
             label = f"carrier {key.text!r}"
             fields = Fields(value, label, ("kind", "formula", "about"), self.findings)
+            self.book.define(key.text, None, key.span)
+            if key.text == BIOMASS:
+                self.findings.add(
+                    "YN305",
+                    f"{BIOMASS!r} is what growth makes, and cannot be a carrier",
+                    key.span,
+                    hint="Rename the carrier.",
+                )
             kind = fields.need("kind", "Say 'kind: energy' or 'kind: redox'.")
             if kind is None:
                 continue
@@ -269,11 +296,29 @@ class _Reader:
                         span=key.span,
                     )
                 )
-            self.book.own[key.text] = None
+                self._against_library(key, formula)
 
     def _compounds(self, node: Node | None) -> None:
-        for key, value in entries(node, "'compounds'", self.findings) if node else ():
+        known = library_names()
+        pairs = unsplit_pairs(node, "'compounds'", self.findings, known) if node else ()
+        for key, value in pairs:
             label = f"compound {key.text!r}"
+            twin = self.book.twin(key.text)
+            if twin is not None:
+                self.findings.add(
+                    "YN303",
+                    f"{key.text!r} and {twin!r} are two names of one compound",
+                    key.span,
+                    hint="Define it once, and use one name throughout the file.",
+                )
+            if key.text == BIOMASS and self.root_has("growth"):
+                self.findings.add(
+                    "YN305",
+                    f"{BIOMASS!r} is defined here and under 'growth'",
+                    key.span,
+                    hint="Keep it under 'growth' alone.",
+                )
+                continue
             if key.text in self.book.own:
                 self.findings.add(
                     "YN305",
@@ -288,25 +333,49 @@ class _Reader:
                 about, charge = fields.text("about"), fields.number("charge")
                 inner = fields.need("formula", "Give its formula.")
                 if inner is None:
-                    self.book.own[key.text] = None
+                    self.book.define(key.text, None, key.span)
                     continue
                 place = inner
             formula = self._formula(place, label)
             if formula is not None and charge is not None:
-                if charge.value.denominator != 1:
-                    self.findings.add(
-                        "YN201",
-                        f"{label}: charge {charge.text} is not whole",
-                        place.span,
-                        hint="Write a whole number.",
-                    )
-                formula = Formula(formula.elements, int(charge.value))
+                formula = self._charged(formula, charge, label, place.span)
             self._against_library(key, formula)
-            self.book.own[key.text] = None
+            compound = None
             if formula is not None:
                 compound = Compound(name=key.text, formula=formula, about=about, span=key.span)
-                self.book.own[key.text] = compound
                 self.own.append(compound)
+            self.book.define(key.text, compound, key.span)
+
+    def _charged(
+        self, formula: Formula, charge: WrittenNumber, label: str, span: SourceSpan
+    ) -> Formula:
+        """Formula with the charge that stands beside it."""
+        if formula.charge:
+            self.findings.add(
+                "YN305",
+                f"{label} has a charge in its formula and another beside it",
+                span,
+                left=f"formula {formula.charge:+d}",
+                right=f"charge {charge.text}",
+                hint="Keep one.",
+            )
+        elif charge.value.denominator != 1:
+            self.findings.add(
+                "YN201",
+                f"{label}: charge {charge.text} is not whole",
+                span,
+                hint="Write a whole number.",
+            )
+        elif abs(charge.value) > MAX_CHARGE:
+            self.findings.add(
+                "YN202",
+                f"{label}: no compound has the charge {charge.text}",
+                span,
+                left=f"limit {MAX_CHARGE}",
+            )
+        else:
+            return Formula(formula.elements, int(charge.value))
+        return formula
 
     def _against_library(self, key: Node, formula: Formula | None) -> None:
         entry = find_compound(key.text)
@@ -370,7 +439,7 @@ class _Reader:
                     hint=near(word, [item.name for item in biomass_entries()])
                     or "Write a mapping: {formula: CH1.8O0.5N0.2, ash: 0.05}.",
                 )
-        self.book.own[BIOMASS] = compound
+        self.book.define(BIOMASS, compound, node.span)
         if compound is not None:
             self.own.append(compound)
             if compound.formula["P"]:
@@ -412,19 +481,21 @@ class _Reader:
                     )
                 else:
                     found[name] = (_SIDES[key.text], item.span)
+                    self.crossing_spans[name] = item.span
         return tuple((name, direction) for name, (direction, _) in found.items())
 
     def _equation(self, node: Node, label: str) -> Equation | None:
         written = text(node, f"the equation of {label}", self.findings)
         if written is None:
             return None
-        equation = read_equation(written, node.span, label, self.findings, self.book.resolve)
+        equation = read_equation(
+            written, node.span, label, self.findings, self.book.resolve, node.locate
+        )
         known = [item.name for item in self.parameters]
         for _, term in equation.terms() if equation else ():
             if not isinstance(term.coefficient, Expression):
                 continue
             for name in term.coefficient.names():
-                self.used[name] = None
                 if name not in known:
                     self.findings.add(
                         "YN302",
@@ -503,8 +574,16 @@ class _Reader:
         equation = self._equation(place, "growth") if place else None
         if equation is None or biomass is None or place is None:
             return None
+        if equation.reversible:
+            self.findings.add(
+                "YN208",
+                "the growth equation runs one way",
+                place.span,
+                left="found <->",
+                hint="Write ->.",
+            )
         made = [term for term in equation.right if term.name == BIOMASS]
-        if len(made) != 1 or str(made[0]) != BIOMASS:
+        if len(made) != 1 or not _is_one(made[0]):
             self.findings.add(
                 "YN414",
                 "the growth equation must make 'biomass' once, with coefficient 1",
@@ -525,6 +604,7 @@ class _Reader:
         known = tuple(
             dict.fromkeys(name for item in reactions for name in (item.name, item.group) if name)
         )
+        known += (GROWTH,)
         strains: list[Strain] = []
         for key, value in entries(node, "'strains'", self.findings) if node else ():
             off = text_list(value, f"strain {key.text!r}", self.findings, known)
@@ -591,7 +671,7 @@ class _Reader:
             return None
         if quantity.sd is not None:
             self.findings.add(
-                "YN210",
+                "YN112",
                 "maintenance has an error, which nothing here would use",
                 value.span,
                 hint="Write the value alone; a parameter may have a low and a high.",
@@ -611,3 +691,8 @@ class _Reader:
             source=source,
             span=value.span,
         )
+
+
+def _is_one(term: Term) -> bool:
+    number = term.coefficient
+    return isinstance(number, WrittenNumber) and number.value == 1

@@ -7,8 +7,9 @@ float on the way: the field that reads a piece decides what it means.
 from __future__ import annotations
 
 import re
+import unicodedata
 import warnings
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from enum import StrEnum
 from typing import TYPE_CHECKING, Any
 
@@ -21,6 +22,12 @@ __all__ = ["MAX_NESTING", "Kind", "Node", "compose"]
 
 MAX_NESTING = 12
 """Deepest nesting of a file; the formats need 4 [-]."""
+_DEEPEST = 60
+"""Brackets beyond which a text is not handed to the parser, which calls itself [-]."""
+_CORE_TAGS = tuple(
+    f"tag:yaml.org,2002:{kind}"
+    for kind in ("str", "int", "float", "bool", "null", "map", "seq", "timestamp", "merge", "value")
+)
 
 
 class Kind(StrEnum):
@@ -51,6 +58,10 @@ class Node:
         Keys and values of a mapping, each key once.
     flow : bool
         Whether a list or mapping is written in brackets.
+    lines : tuple of str
+        Lines of the file over which a text goes.
+    broken : bool
+        Whether the value was refused already, so that nothing more need be said of it.
     """
 
     kind: Kind
@@ -60,11 +71,41 @@ class Node:
     items: tuple[Node, ...] = ()
     pairs: tuple[tuple[Node, Node], ...] = ()
     flow: bool = False
+    lines: tuple[str, ...] = ()
+    broken: bool = False
+
+    def locate(self, piece: str) -> SourceSpan:
+        """Place of a piece of a text, down to its line and column; of the node if it is not found.
+
+        Parameters
+        ----------
+        piece : str
+            Part of the text.
+
+        Returns
+        -------
+        SourceSpan
+            Where it stands.
+        """
+        for words in (piece, piece.rsplit(" ", 1)[-1]):
+            for number, line in enumerate(self.lines):
+                start = self.span.column - 1 if number == 0 else 0
+                at = line.find(words, start) if words else -1
+                if at >= 0:
+                    return SourceSpan(
+                        file=self.span.file, line=self.span.line + number, column=at + 1
+                    )
+        return self.span
 
     @property
     def empty(self) -> bool:
         """Whether nothing was written."""
-        return self.kind is Kind.TEXT and self.plain and self.text in {"", "~", "null"}
+        return (
+            self.kind is Kind.TEXT
+            and self.plain
+            and not self.broken
+            and self.text in {"", "~", "null"}
+        )
 
 
 def compose(text: str, path: str, findings: Findings) -> Node | None:
@@ -84,6 +125,16 @@ def compose(text: str, path: str, findings: Findings) -> Node | None:
     Node or None
         The tree.
     """
+    if (deep := _too_deep(text)) is not None:
+        line, column = deep
+        findings.add(
+            "YN108",
+            "the file is nested too deep",
+            SourceSpan(file=path, line=line, column=column),
+            left=f"limit {MAX_NESTING} levels",
+            hint="Write the file flat, as in the examples.",
+        )
+        return None
     from ruamel.yaml import YAML
     from ruamel.yaml.error import MarkedYAMLError, YAMLError
     from ruamel.yaml.reader import ReaderError
@@ -103,15 +154,6 @@ def compose(text: str, path: str, findings: Findings) -> Node | None:
         )
         findings.add("YN104", "a control character stands in the text", span, hint="Delete it.")
         return None
-    except RecursionError:
-        findings.add(
-            "YN108",
-            "brackets are nested too deep to be read",
-            SourceSpan(file=path, line=1, column=1),
-            left=f"limit {MAX_NESTING} levels",
-            hint="Write the file flat, as in the examples.",
-        )
-        return None
     except (YAMLError, ValueError) as error:
         span = SourceSpan(file=path, line=1, column=1)
         reason = str(error).split("\n", 1)[0]
@@ -125,7 +167,21 @@ def compose(text: str, path: str, findings: Findings) -> Node | None:
             hint="Start from a shipped example.",
         )
         return None
-    return _convert(root, path, findings, 0)
+    return _Converter(path, text.split("\n"), findings).convert(root, 0)
+
+
+def _too_deep(text: str) -> tuple[int, int] | None:
+    """Line and column where brackets or dashes go deeper than any parser should follow."""
+    depth = 0
+    for number, line in enumerate(text.split("\n"), 1):
+        dashes = re.match(r"\s*(?:-\s+)*", line)
+        if dashes and dashes[0].count("-") > MAX_NESTING:
+            return number, 1
+        for column, letter in enumerate(line, 1):
+            depth = max(0, depth + {"[": 1, "{": 1, "]": -1, "}": -1}.get(letter, 0))
+            if depth > _DEEPEST:
+                return number, column
+    return None
 
 
 def _syntax(error: Any, text: str, path: str, findings: Findings) -> None:
@@ -134,87 +190,130 @@ def _syntax(error: Any, text: str, path: str, findings: Findings) -> None:
     column = mark.column + 1 if mark else 1
     span = SourceSpan(file=path, line=line, column=column)
     lines = text.split("\n")
-    written = lines[line - 1].rstrip() if line <= len(lines) else ""
-    if re.search(r"(^\s*-|:)\s+\?\s", written):
+    written = " ".join(lines[line - 1].split()) if line <= len(lines) else ""
+    if re.search(r"(^-|:)\s+\?\s", written):
         findings.add(
             "YN115",
             "a text that begins with ? means something else in YAML",
             span,
-            left=written.strip(),
+            left=written,
             hint='Put the equation in double quotes: "? xylose -> ...".',
         )
         return
     hint = "Check indentation, brackets and quotes near this place."
     if re.search(r":\s[^\"'#]*:\s", written):
         hint = "Put the text after the first colon in quotes: it holds another colon."
+    opened = error.context_mark
+    since = f" {error.context}" if error.context else ""
+    if opened is not None and opened.line + 1 != line:
+        since += f" that begins at line {opened.line + 1}"
     findings.add(
         "YN104",
-        f"the file is not YAML here: {error.problem or error.context}",
+        f"the file is not YAML here{since}: {error.problem or 'nothing more can be read'}",
         span,
-        left=written.strip()[:60],
+        left=written[:60],
         hint=hint,
     )
 
 
-def _convert(raw: Any, path: str, findings: Findings, depth: int) -> Node | None:
-    mark = raw.start_mark
-    span = SourceSpan(file=path, line=mark.line + 1, column=mark.column + 1)
-    if raw.anchor is not None:
-        findings.add(
-            "YN107",
-            f"anchors and aliases are not used here (&{raw.anchor})",
-            span,
-            hint="Write the value out where it is needed.",
-        )
-        return None
-    if depth > MAX_NESTING:
-        findings.add(
-            "YN108",
-            "the file is nested too deep",
-            span,
-            left=f"limit {MAX_NESTING} levels",
-            hint="Write the file flat, as in the examples.",
-        )
-        return None
-    if isinstance(raw.value, str):
-        return Node(kind=Kind.TEXT, span=span, text=raw.value.strip(), plain=raw.style is None)
-    if raw.value and isinstance(raw.value[0], tuple):
-        return _mapping(raw, span, path, findings, depth)
-    if type(raw).__name__ == "MappingNode":
-        return Node(kind=Kind.MAPPING, span=span, flow=bool(raw.flow_style))
-    items = [_convert(item, path, findings, depth + 1) for item in raw.value]
-    return Node(
-        kind=Kind.LIST,
-        span=span,
-        items=tuple(item for item in items if item is not None),
-        flow=bool(raw.flow_style),
-    )
+@dataclass(slots=True)
+class _Converter:
+    """Turns the nodes of the YAML library into our own."""
 
+    path: str
+    lines: list[str]
+    findings: Findings
 
-def _mapping(raw: Any, span: SourceSpan, path: str, findings: Findings, depth: int) -> Node:
-    pairs: list[tuple[Node, Node]] = []
-    first: dict[str, SourceSpan] = {}
-    for raw_key, raw_value in raw.value:
-        key = _convert(raw_key, path, findings, depth + 1)
-        value = _convert(raw_value, path, findings, depth + 1)
-        if key is None or value is None:
-            continue
-        if key.kind is not Kind.TEXT:
-            code, reason = "YN112", f"a {key.kind} cannot be a name"
-            if key.span.column > 1 or raw_value.value == "":
-                reason += "; a text that begins with ? needs quotes"
-            findings.add(code, reason, key.span, hint="Write a text followed by a colon.")
-            continue
-        if key.text in first:
-            findings.add(
-                "YN109",
-                f"{key.text!r} is written twice",
-                key.span,
-                left=f"first at line {first[key.text].line}",
-                right=f"again at line {key.span.line}",
-                hint="Keep one of them.",
+    def convert(self, raw: Any, depth: int) -> Node | None:
+        mark = raw.start_mark
+        span = SourceSpan(file=self.path, line=mark.line + 1, column=mark.column + 1)
+        if raw.anchor is not None:
+            self.findings.add(
+                "YN107",
+                f"anchors and aliases are not used here (&{raw.anchor})",
+                span,
+                hint="Write the value out where it is needed.",
             )
-            continue
-        first[key.text] = key.span
-        pairs.append((key, value))
-    return Node(kind=Kind.MAPPING, span=span, pairs=tuple(pairs), flow=bool(raw.flow_style))
+            return None
+        if not str(raw.tag).startswith(_CORE_TAGS) or "/" in str(raw.tag):
+            self.findings.add(
+                "YN112",
+                "a YAML tag stands before the value",
+                span,
+                hint="Write the value alone; the place where it stands says what it is.",
+            )
+            return None
+        if depth > MAX_NESTING:
+            self.findings.add(
+                "YN108",
+                "the file is nested too deep",
+                span,
+                left=f"limit {MAX_NESTING} levels",
+                hint="Write the file flat, as in the examples.",
+            )
+            return None
+        if isinstance(raw.value, str):
+            return self._text(raw, span)
+        if type(raw).__name__ == "MappingNode":
+            return self._mapping(raw, span, depth)
+        items = [self.convert(item, depth + 1) for item in raw.value]
+        if items and None in items and len(items) == 1:
+            return None
+        return Node(
+            kind=Kind.LIST,
+            span=span,
+            items=tuple(item for item in items if item is not None),
+            flow=bool(raw.flow_style),
+        )
+
+    def _text(self, raw: Any, span: SourceSpan) -> Node | None:
+        if any(
+            unicodedata.category(letter) in ("Cc", "Cs") for letter in raw.value.replace("\n", "")
+        ):
+            self.findings.add(
+                "YN104", "the text holds a control character", span, hint="Delete it."
+            )
+            return None
+        last = max(span.line, raw.end_mark.line + (1 if raw.end_mark.column else 0))
+        return Node(
+            kind=Kind.TEXT,
+            span=span,
+            text=raw.value.strip(),
+            plain=raw.style is None,
+            lines=tuple(self.lines[span.line - 1 : last]),
+        )
+
+    def _mapping(self, raw: Any, span: SourceSpan, depth: int) -> Node:
+        pairs: list[tuple[Node, Node]] = []
+        first: dict[str, SourceSpan] = {}
+        for raw_key, raw_value in raw.value:
+            key = self.convert(raw_key, depth + 1)
+            value = self.convert(raw_value, depth + 1)
+            if key is None:
+                continue
+            if value is None:
+                value = Node(kind=Kind.TEXT, span=key.span, broken=True)
+            if key.kind is not Kind.TEXT:
+                self.findings.add(
+                    "YN112",
+                    f"a {key.kind} cannot be a name",
+                    key.span,
+                    hint="Write a text followed by a colon; one that begins with ? needs quotes.",
+                )
+                continue
+            if key.text in first:
+                self.findings.add(
+                    "YN109",
+                    f"{key.text!r} is written twice",
+                    key.span,
+                    left=f"first at line {first[key.text].line}",
+                    right=f"again at line {key.span.line}",
+                    hint="Keep one of them.",
+                )
+                continue
+            if value.empty:
+                # Nothing was written: the parser places it at whatever comes next.
+                value = replace(value, span=key.span)
+            first[key.text] = key.span
+            pairs.append((key, value))
+        return Node(kind=Kind.MAPPING, span=span, pairs=tuple(pairs), flow=bool(raw.flow_style))

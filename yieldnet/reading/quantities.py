@@ -46,6 +46,10 @@ class QuantityRange:
     unit: Unit | None
 
 
+_FOREIGN_BOUNDS = {"<": "at most", "<=": "at most", "≤": "at most", ">": "at least"}
+_FOREIGN_BOUNDS.update({">=": "at least", "≥": "at least"})
+
+
 class _Refused(Exception):
     def __init__(self, code: str, reason: str, hint: str = "") -> None:
         self.code, self.reason, self.hint = code, reason, hint
@@ -159,6 +163,11 @@ def _number(words: list[str]) -> tuple[WrittenNumber, list[str]]:
 
 
 def _read(word: str) -> WrittenNumber:
+    if word == "at":
+        raise _Refused("YN201", "a bound stands where a value belongs", "Write it under 'demands'.")
+    for sign, words in _FOREIGN_BOUNDS.items():
+        if word == sign or (word.startswith(sign) and word[len(sign) :][:1].isdigit()):
+            raise _Refused("YN201", f"{sign!r} is not understood", f"Write '{words}' instead.")
     try:
         return read_number(word)
     except NumberTextError as error:
@@ -171,6 +180,8 @@ def _read(word: str) -> WrittenNumber:
 def _unit(words: list[str]) -> Unit | None:
     if not words:
         return None
+    if words[0] == "to":
+        raise _Refused("YN201", "a range stands where a value belongs", "Write it under 'demands'.")
     if "±" in words:
         raise _Refused(
             "YN203", "the error stands after the unit", "Write number ± error unit: 0.3 ± 0.1 g/g."

@@ -6,15 +6,18 @@ import re
 from pathlib import Path
 from typing import TYPE_CHECKING
 
-from yieldnet.foundation.findings import SourceSpan, near
+from yieldnet.foundation.findings import Finding, SourceSpan, near
 
 if TYPE_CHECKING:
     from yieldnet.foundation.findings import Findings
 
-__all__ = ["MAX_BYTES", "read_text"]
+__all__ = ["MAX_BYTES", "MAX_FINDINGS", "near_file", "read_text", "too_many"]
 
-MAX_BYTES = 1_000_000
+MAX_BYTES = 300_000
 """Largest file that is read: a network of 60 reactions has about 10,000 bytes [byte]."""
+
+MAX_FINDINGS = 200
+"""Most findings of one file; with more, it is another kind of file, or one slip repeated [-]."""
 
 _MARKS = {
     b"\xef\xbb\xbf": "UTF-8 with a byte order mark",
@@ -60,18 +63,32 @@ def read_text(path: str, findings: Findings) -> str | None:
     except (OSError, ValueError) as error:
         reason = getattr(error, "strerror", None) or "the name cannot be used"
         findings.add(
-            "YN101", f"cannot read {path!r}: {reason.lower()}", top, hint=_neighbours(place)
+            "YN101",
+            f"cannot read {path!r}: {reason.lower()}",
+            top,
+            hint=near_file(place) or "Check the path.",
         )
         return None
     return _decode(raw, path, top, findings)
 
 
-def _neighbours(place: Path) -> str:
+def too_many(path: str) -> Finding:
+    """Finding that stands last where a file has more mistakes than are listed."""
+    return Finding(
+        code="YN116",
+        message=f"reading stopped after {MAX_FINDINGS} findings",
+        where=SourceSpan(file=path, line=1, column=1),
+        hint="Mend these first; is this the right file?",
+    )
+
+
+def near_file(place: Path) -> str:
+    """Hint with near matches among the files of the same folder; empty if there are none."""
     try:
         names = [item.name for item in place.parent.iterdir()]
     except (OSError, ValueError):
-        return "Check the path."
-    return near(place.name, names) or "Check the path."
+        return ""
+    return near(place.name, names)
 
 
 def _decode(raw: bytes, path: str, top: SourceSpan, findings: Findings) -> str | None:
