@@ -24,7 +24,7 @@ import yieldnet
 from yieldnet.cli.main import main
 from yieldnet.foundation.catalogue import CATALOGUE
 from yieldnet.foundation.findings import Finding, Severity
-from yieldnet.optimum.engine import Basis
+from yieldnet.optimum.basis import Basis
 from yieldnet.reading.source import MAX_FINDINGS
 
 if TYPE_CHECKING:
@@ -342,7 +342,7 @@ def test_every_code_of_the_catalogue_is_produced(tmp_path: Path) -> None:
 def test_a_problem_too_large_to_prove_says_so(
     monkeypatch: pytest.MonkeyPatch, run: Callable[..., Result]
 ) -> None:
-    monkeypatch.setattr("yieldnet.optimum.proof.MAX_PIVOTS", -1)
+    monkeypatch.setattr("yieldnet.optimum.exact_simplex.MAX_PIVOTS", -1)
     monkeypatch.setattr(
         "yieldnet.optimum.glpk.GlpkSession.suggest",
         lambda self, problem, objective, maximise: Basis((), frozenset()),

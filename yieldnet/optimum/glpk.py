@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING, Any
 
-from yieldnet.optimum.engine import Basis
+from yieldnet.optimum.basis import Basis
 
 if TYPE_CHECKING:
     from collections.abc import Mapping

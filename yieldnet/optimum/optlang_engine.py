@@ -10,7 +10,7 @@ from fractions import Fraction
 from typing import TYPE_CHECKING, Any
 
 from yieldnet.foundation.exact import eliminate
-from yieldnet.optimum.engine import Basis
+from yieldnet.optimum.basis import Basis
 
 if TYPE_CHECKING:
     from collections.abc import Mapping

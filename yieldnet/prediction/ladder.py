@@ -10,7 +10,6 @@ from yieldnet.balance.statements import side_sign, with_bands, with_point, yield
 from yieldnet.model.case import AimDirection
 from yieldnet.optimum.proof import Status
 from yieldnet.prediction.layers import RUNGS, surplus_column
-from yieldnet.prediction.result import LadderRung
 
 if TYPE_CHECKING:
     from collections.abc import Mapping
@@ -20,7 +19,36 @@ if TYPE_CHECKING:
     from yieldnet.optimum.proof import Answer, Optimiser
     from yieldnet.prediction.layers import Layers
 
-__all__ = ["Objective", "climb_down", "first_infeasible", "objective_of", "runaway_words"]
+__all__ = [
+    "LadderRung",
+    "Objective",
+    "climb_down",
+    "first_infeasible",
+    "objective_of",
+    "runaway_words",
+]
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class LadderRung:
+    """One rung.
+
+    Parameters
+    ----------
+    rung : str
+        Its name.
+    value : Fraction or None
+        Best value of the aim once the rung is added [mol/mol basis].
+    loss : Fraction or None
+        What the rung costs, never negative [mol/mol basis]; ``None`` at the top.
+    reason : str
+        Why there is no value.
+    """
+
+    rung: str
+    value: Fraction | None
+    loss: Fraction | None
+    reason: str = ""
 
 
 @dataclass(frozen=True, slots=True)

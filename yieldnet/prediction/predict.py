@@ -57,9 +57,8 @@ if TYPE_CHECKING:
     from yieldnet.model.case import Case
     from yieldnet.optimum.proof import Answer
     from yieldnet.prediction.conflict import Conflict
-    from yieldnet.prediction.ladder import Objective
+    from yieldnet.prediction.ladder import LadderRung, Objective
     from yieldnet.prediction.layers import Layers
-    from yieldnet.prediction.result import LadderRung
 
 __all__ = ["Wanted", "balance_case", "predict_case"]
 

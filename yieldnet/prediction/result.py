@@ -22,6 +22,7 @@ if TYPE_CHECKING:
     from yieldnet.prediction.certificate import Certificate
     from yieldnet.prediction.conflict import Conflict
     from yieldnet.prediction.fluxes import Fluxes
+    from yieldnet.prediction.ladder import LadderRung
     from yieldnet.prediction.limits import Limit
     from yieldnet.prediction.relaxations import RelaxationReport
     from yieldnet.prediction.shares import Shares
@@ -32,7 +33,6 @@ __all__ = [
     "CoefficientAnswer",
     "CoefficientStatus",
     "EquationTerm",
-    "LadderRung",
     "Outcome",
     "Prediction",
     "Reconciled",
@@ -142,28 +142,6 @@ class CoefficientAnswer:
     at_aim: Range | None
     percent: Fraction | None
     status: CoefficientStatus
-
-
-@dataclass(frozen=True, slots=True, kw_only=True)
-class LadderRung:
-    """One rung.
-
-    Parameters
-    ----------
-    rung : str
-        Its name.
-    value : Fraction or None
-        Best value of the aim once the rung is added [mol/mol basis].
-    loss : Fraction or None
-        What the rung costs, never negative [mol/mol basis]; ``None`` at the top.
-    reason : str
-        Why there is no value.
-    """
-
-    rung: str
-    value: Fraction | None
-    loss: Fraction | None
-    reason: str = ""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
