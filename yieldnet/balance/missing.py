@@ -6,7 +6,12 @@ from fractions import Fraction
 from typing import TYPE_CHECKING
 
 from yieldnet.balance.elements import element_matrix
-from yieldnet.balance.statements import add_coefficient_columns, yield_column
+from yieldnet.balance.statements import (
+    Statements,
+    add_coefficient_columns,
+    add_statement_rows,
+    yield_column,
+)
 from yieldnet.chemistry.library import find_compound
 from yieldnet.foundation.findings import Findings
 from yieldnet.model.binding import composition
@@ -126,6 +131,8 @@ def _problem(case: Case, elements: _Elements, added: list[tuple[Compound, Direct
             Bounds(_ZERO, _ZERO),
             {yield_column(name): value for name, value in line.items()},
         )
+    # Exact coefficients alone: measured values and demands may contradict for other reasons.
+    add_statement_rows(builder, case, Statements(measured=(), set_aside=(), demands=()))
     return builder.build()
 
 

@@ -27,6 +27,7 @@ __all__ = [
     "add_coefficient_columns",
     "add_statement_rows",
     "band",
+    "is_exact",
     "kind_of",
     "side_sign",
     "statements_of",
@@ -127,6 +128,11 @@ def kind_of(item: Measurement) -> str:
     return "written" if item.label.startswith("written ") else "measured"
 
 
+def is_exact(item: OverallCoefficient) -> bool:
+    """Whether a coefficient is written as an integer, a fraction, or with ``exact``."""
+    return item.written is not None and item.written.last_place is None
+
+
 def yield_column(compound: str) -> str:
     """Name of the column that holds a compound's coefficient, production positive."""
     return f"yield of {compound}"
@@ -138,9 +144,6 @@ def side_sign(side: Direction) -> int:
 
 
 def _bounds(item: OverallCoefficient) -> Bounds:
-    if item.written is not None and item.written.last_place is None:
-        value = side_sign(item.side) * item.written.value
-        return Bounds(value, value)
     if item.side is Direction.CONSUMED:
         return Bounds(None, Fraction(0))
     if item.side is Direction.PRODUCED:
@@ -157,7 +160,19 @@ def add_coefficient_columns(builder: ProblemBuilder, case: Case) -> None:
 
 
 def add_statement_rows(builder: ProblemBuilder, case: Case, statements: Statements) -> None:
-    """Add a free row for every statement; the functions below give the rows their bounds."""
+    """Add a row for every statement: exact coefficients fixed, the others free for now.
+
+    The functions below give the free rows their bounds.
+    """
+    for item in case.coefficients:
+        if is_exact(item):
+            assert item.written is not None
+            builder.add_row(
+                f"written {item.name}",
+                "elements",
+                Bounds(item.written.value, item.written.value),
+                {yield_column(item.name): Fraction(side_sign(item.side))},
+            )
     names = [(item.label, item.compound, "measured") for item in statements.measured]
     names += [(f"demand {item.compound}", item.compound, "demands") for item in statements.demands]
     for label, compound, layer in names:

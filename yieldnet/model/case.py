@@ -15,6 +15,7 @@ if TYPE_CHECKING:
 
 __all__ = [
     "BAND",
+    "DEFAULT_YIELD_UNIT",
     "Aim",
     "AimDirection",
     "Case",
@@ -29,6 +30,10 @@ __all__ = [
 
 BAND = 2
 """Half width of a measured value's band in standard deviations [-]."""
+
+
+DEFAULT_YIELD_UNIT = "mol/mol"
+"""Unit of a measured value or demand that is written without one."""
 
 
 class AimDirection(StrEnum):
@@ -109,6 +114,8 @@ class Measurement:
         Unit in which it was written.
     factor : Fraction
         mol/mol basis in one ``unit`` [mol/mol].
+    unit_given : bool
+        Whether the unit was written, rather than the default taken.
     span : SourceSpan or None
         Where it was written.
     """
@@ -120,6 +127,7 @@ class Measurement:
     label: str
     unit: str = "mol/mol"
     factor: Fraction = Fraction(1)
+    unit_given: bool = True
     span: SourceSpan | None = field(default=None, compare=False, repr=False)
 
 
@@ -139,6 +147,8 @@ class Demand:
         Unit in which it was written.
     factor : Fraction
         mol/mol basis in one ``unit`` [mol/mol].
+    unit_given : bool
+        Whether the unit was written, rather than the default taken.
     span : SourceSpan or None
         Where it was written.
     """
@@ -149,6 +159,7 @@ class Demand:
     text: str
     unit: str = "mol/mol"
     factor: Fraction = Fraction(1)
+    unit_given: bool = True
     span: SourceSpan | None = field(default=None, compare=False, repr=False)
 
 

@@ -6,7 +6,7 @@ from typing import TYPE_CHECKING
 
 from yieldnet.balance.statements import GROWTH_OVER_UPTAKE
 from yieldnet.foundation.sourced import Assumption
-from yieldnet.model.case import EnergySurplus
+from yieldnet.model.case import DEFAULT_YIELD_UNIT, EnergySurplus
 from yieldnet.model.expression import Expression
 from yieldnet.model.network import BIOMASS, CarrierKind
 from yieldnet.prediction.layers import maintenance_row, switched_off
@@ -68,7 +68,15 @@ def assumptions_of(
                 unit="degC",
             )
         )
-    if any(item.name == BIOMASS and item.ash for item in case.compounds):
+    bare = [f"measured {item.compound}" for item in case.measured if not item.unit_given]
+    bare += [f"demand {item.compound}" for item in case.demands if not item.unit_given]
+    if bare:
+        found.append(
+            Assumption(text=f"without a unit, so in {DEFAULT_YIELD_UNIT}: {', '.join(bare)}")
+        )
+    if case.coefficient(BIOMASS) is not None and not case.compound(BIOMASS).ash:
+        found.append(Assumption(text="biomass has no ash given, so it weighs its formula alone"))
+    if case.coefficient(BIOMASS) is not None and case.compound(BIOMASS).ash:
         biomass = case.compound(BIOMASS)
         found.append(
             Assumption(

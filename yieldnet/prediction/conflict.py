@@ -16,7 +16,7 @@ from dataclasses import dataclass, field
 from fractions import Fraction
 from typing import TYPE_CHECKING
 
-from yieldnet.balance.statements import band, kind_of, side_sign, with_bands, yield_column
+from yieldnet.balance.statements import band, is_exact, kind_of, side_sign, with_bands, yield_column
 from yieldnet.model.case import EnergySurplus
 from yieldnet.model.network import Direction
 from yieldnet.optimum.problem import FREE, Bounds
@@ -211,8 +211,6 @@ class _Search:
             return None
         reach = found[column] if sign > 0 else found[column].turned()
         held = item.held
-        if item.kind == "written" and sign < 0:
-            held = Bounds(-(held.high or _ZERO), -(held.low or _ZERO))
         if held.high is not None and reach.low is not None and reach.low > held.high:
             return reach.low - held.high
         if held.low is not None and reach.high is not None and reach.high < held.low:
@@ -320,15 +318,12 @@ def _coefficient_statements(layers: Layers) -> list[_Statement]:
     for item in layers.case.coefficients:
         column = yield_column(item.name)
         direction = layers.bound.network.direction(item.name) if layers.bound else None
-        if item.written is not None and item.written.last_place is None:
-            value = side_sign(item.side) * item.written.value
+        if is_exact(item):
+            assert item.written is not None
+            value = item.written.value
+            label = f"written {item.name}"
             found.append(
-                _Statement(
-                    "written",
-                    f"written {item.name}",
-                    {column: Bounds(value, value)},
-                    compound=item.name,
-                )
+                _Statement("written", label, rows={label: Bounds(value, value)}, compound=item.name)
             )
         if item.side is not Direction.EITHER and direction in (None, Direction.EITHER):
             found.append(_Statement("side", item.name, {column: _WAYS[item.side]}))

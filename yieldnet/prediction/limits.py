@@ -7,7 +7,7 @@ from fractions import Fraction
 from itertools import combinations
 from typing import TYPE_CHECKING
 
-from yieldnet.balance.statements import kind_of
+from yieldnet.balance.statements import is_exact, kind_of
 from yieldnet.model.network import CarrierKind
 from yieldnet.optimum.slopes import slopes
 from yieldnet.prediction.layers import maintenance_row
@@ -118,6 +118,10 @@ def _statements(layers: Layers) -> list[Target]:
         own = [item for item in statements.measured if item.compound == name]
         move = {item.label: own[0].factor for item in own}
         found.append((kind_of(own[0]), own[0].label, move, own[0].unit))
+    for coefficient in layers.case.coefficients:
+        if is_exact(coefficient):
+            label = f"written {coefficient.name}"
+            found.append(("written", label, {label: _ONE}, "mol/mol"))
     for item in statements.demands:
         label = f"demand {item.compound}"
         found.append(("demand", label, {label: item.factor}, item.unit))

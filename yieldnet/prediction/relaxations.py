@@ -12,7 +12,7 @@ from itertools import combinations
 from typing import TYPE_CHECKING
 
 from yieldnet.audit.flux import closed_network, energy_loop
-from yieldnet.balance.statements import kind_of, yield_column
+from yieldnet.balance.statements import is_exact, kind_of, yield_column
 from yieldnet.model.case import EnergySurplus
 from yieldnet.model.network import GROWTH, CarrierKind, Direction
 from yieldnet.optimum.problem import FREE, Bounds
@@ -90,6 +90,8 @@ class Relaxation:
         Why there is no value.
     words : str
         What giving it back means.
+    unbounded : bool
+        Whether there is no value because the aim then has no bound.
     """
 
     parts: tuple[tuple[str, str], ...]
@@ -97,6 +99,7 @@ class Relaxation:
     gain: Fraction | None
     reason: str
     words: str
+    unbounded: bool = False
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -145,6 +148,10 @@ def candidates_of(layers: Layers) -> tuple[Candidate, ...]:
         found.append(
             Candidate(kind_of(item), item.label, {}, {item.label: FREE}, f"without '{item.label}'")
         )
+    for coefficient in case.coefficients:
+        if is_exact(coefficient) and coefficient.name != (case.aim.compound if case.aim else ""):
+            label = f"written {coefficient.name}"
+            found.append(Candidate("written", label, {}, {label: FREE}, f"without '{label}'"))
     for demand in layers.statements.demands:
         label = f"demand {demand.compound}"
         found.append(Candidate("demand", label, {}, {label: FREE}, f"without '{label}'"))
@@ -329,7 +336,7 @@ def relax(
         if found is not None:
             helpful.append(found)
     singles = len(helpful)
-    pairs = not any(item.gain is None or item.gain > 0 for item in helpful)
+    pairs = not any(item.unbounded or (item.gain or _ZERO) > 0 for item in helpful)
     if pairs:
         offered = [item for item in tried if item.kind != "tightening"]
         for pair in combinations(offered, 2):
@@ -339,7 +346,8 @@ def relax(
     order = sorted(
         range(len(helpful)),
         key=lambda i: (
-            helpful[i].gain is not None,
+            not helpful[i].unbounded,
+            helpful[i].gain is None,
             -(helpful[i].gain or _ZERO),
             i,
         ),
@@ -390,7 +398,12 @@ class _Bench:
         words = " and ".join(part.words for part in parts)
         if answer.status is Status.UNBOUNDED:
             return Relaxation(
-                parts=names, value=None, gain=None, reason=runaway_words(answer), words=words
+                parts=names,
+                value=None,
+                gain=None,
+                reason=runaway_words(answer),
+                words=words,
+                unbounded=True,
             )
         if answer.status is Status.INFEASIBLE:
             return Relaxation(

@@ -12,11 +12,13 @@ from yieldnet.foundation.units import (
     Unit,
     UnitError,
     per_hour,
+    read_unit,
     specific_rate_mol_per_gram_hour,
     yield_factor,
 )
 from yieldnet.model.case import (
     BAND,
+    DEFAULT_YIELD_UNIT,
     Aim,
     AimDirection,
     Condition,
@@ -179,7 +181,7 @@ class StatementReader:
 
     def _yield(self, name: str, unit: Unit | None) -> Fraction:
         weight = self.compound(name).weight
-        return yield_factor(unit or Unit("mol", ("mol",)), weight, self.basis.weight)
+        return yield_factor(unit or read_unit(DEFAULT_YIELD_UNIT), weight, self.basis.weight)
 
     def measured(self, node: Node | None) -> tuple[Measurement, ...]:
         found: dict[str, Measurement] = {}
@@ -235,7 +237,8 @@ class StatementReader:
                 sd=quantity.sd * factor if quantity.sd else None,
                 text=written,
                 label=f"measured {name}",
-                unit=str(quantity.unit or "mol/mol"),
+                unit=str(quantity.unit or DEFAULT_YIELD_UNIT),
+                unit_given=quantity.unit is not None,
                 factor=factor,
                 span=key.span,
             )
@@ -285,7 +288,8 @@ class StatementReader:
                 low=bounds.low.value * factor if bounds.low else None,
                 high=bounds.high.value * factor if bounds.high else None,
                 text=written,
-                unit=str(bounds.unit or "mol/mol"),
+                unit=str(bounds.unit or DEFAULT_YIELD_UNIT),
+                unit_given=bounds.unit is not None,
                 factor=factor,
                 span=key.span,
             )

@@ -377,10 +377,14 @@ def _remarks(result: Prediction) -> tuple[str, ...]:
     need = result.carbon_dioxide_need
     if need is not None:
         amount = Range(need.least, need.most)
-        without = "nothing" if need.without is None else f"{figure(need.without)} mol/mol"
+        without = (
+            "the case is infeasible"
+            if need.without is None
+            else f"the best is {figure(need.without)} mol/mol"
+        )
         found.append(
             f"The best value takes up {range_text(amount)} mol carbon dioxide net;"
-            f" without net uptake the best is {without}."
+            f" without net uptake {without}."
         )
     found += movement_lines(result)
     moved = [

@@ -44,7 +44,9 @@ def relaxation_words(item: Relaxation) -> str:
         ``undoing 'glyoxylate shunt' gives 1.20``.
     """
     if item.value is None:
-        return f"{item.words} there is no best value: {item.reason}"
+        if item.unbounded:
+            return f"{item.words} there is no best value: {item.reason}"
+        return f"{item.words}, {item.reason}"
     return f"{item.words} gives {figure(item.value)}"
 
 
@@ -53,7 +55,7 @@ def relaxations_table(result: Prediction) -> Table | None:
     report = result.relaxations
     if report is None:
         return None
-    endless = [item for item in report.helpful if item.value is None]
+    endless = [item for item in report.helpful if item.unbounded]
     rows = [
         (item.words, figure(item.value), with_sign(item.gain))
         for item in report.helpful
@@ -62,6 +64,11 @@ def relaxations_table(result: Prediction) -> Table | None:
     notes = [f"{item.words} there is no best value: {item.reason}." for item in endless[:1]]
     if len(endless) > 1:
         notes.append(f"The same {', '.join(item.words for item in endless[1:])}.")
+    notes += [
+        f"{item.words}, {item.reason}."
+        for item in report.helpful
+        if item.value is None and not item.unbounded
+    ]
     notes.append(f"{_counted(report.without_effect, 'other change')} would change nothing.")
     if report.not_offered:
         notes.append(
