@@ -268,6 +268,12 @@ def _solve(
     if failed:
         return None
     terms = equation.terms()
+    for place, (sign, term) in enumerate(terms):
+        value = numbers[place]
+        names = term.coefficient.names() if isinstance(term.coefficient, Expression) else ()
+        composite = str(term.coefficient) != f"({names[0] if names else ''})"
+        if value is not None and value < 0 and composite:
+            _report_move(name, sign, term, value, span, findings)
     unknown = [place for place, number in enumerate(numbers) if number is None]
     for place in unknown:
         if not composition(formulas[terms[place][1].name]):
@@ -291,20 +297,32 @@ def _solve(
             continue
         value = values[unknown.index(place)]
         if value < 0:
-            sides = {-1: "left", 1: "right"}
-            findings.add(
-                "YN404",
-                f"the ? of {term.name!r} in {name!r} is negative and moves to the other side",
-                term.span or span,
-                left=f"written on the {sides[sign]}",
-                right=f"{float(-value):.4g} on the {sides[-sign]}",
-                hint="Move it in the file to read the equation as it runs.",
-                severity=Severity.NOTE,
-            )
+            _report_move(name, sign, term, value, span, findings)
             sign, value = -sign, -value
         if value:
             solved.append((sign, term.name, value, True))
     return tuple(solved)
+
+
+def _report_move(
+    name: str,
+    sign: int,
+    term: Term,
+    value: Fraction,
+    span: SourceSpan | None,
+    findings: Findings,
+) -> None:
+    """Say that a coefficient came out negative, so that it counts on the other side."""
+    sides = {-1: "left", 1: "right"}
+    findings.add(
+        "YN404",
+        f"{term.coefficient} of {term.name!r} in {name!r} is negative and counts on the other side",
+        term.span or span,
+        left=f"written on the {sides[sign]}",
+        right=f"{float(-value):.4g} on the {sides[-sign]}",
+        hint="Move it in the file to read the equation as it runs.",
+        severity=Severity.NOTE,
+    )
 
 
 def _blamed(term: Term, places: Mapping[str, SourceSpan]) -> SourceSpan | None:
