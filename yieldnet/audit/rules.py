@@ -65,7 +65,7 @@ def closure(bound: BoundNetwork) -> Findings:
                 reaction.span,
                 left=left,
                 right=right,
-                hint=_mend(bound, residual),
+                hint=_mend(bound, reaction, residual),
             )
     return findings
 
@@ -87,28 +87,57 @@ def _sides(
     return f"left {texts[0]}", f"right {texts[1]}"
 
 
-def _mend(bound: BoundNetwork, residual: dict[str, Fraction]) -> str:
-    """The single compound that would close the balance, its own network first."""
-    own = {name: formula for name, formula in bound.formulas if name != BIOMASS}
-    library = {item.name: item.formula for item in compound_entries() if item.kind == "crossing"}
-    found: list[str] = []
-    for name, formula in {**library, **own}.items():
-        parts = composition(formula)
-        if not parts or set(parts) != set(residual):
+def _mend(bound: BoundNetwork, reaction: BoundReaction, residual: dict[str, Fraction]) -> str:
+    """The single compound that would close the balance, added or in place of another one."""
+    own = {name: composition(formula) for name, formula in bound.formulas if name != BIOMASS}
+    library = {
+        item.name: composition(item.formula)
+        for item in compound_entries()
+        if item.kind == "crossing" and item.name not in own
+    }
+    for known, where in ((own, ""), (library, ", which the network would have to know")):
+        found = [
+            f"{_amount(abs(amount))} {name} more on the {'left' if amount > 0 else 'right'}"
+            for name, parts in known.items()
+            if (amount := _multiple(residual, parts))
+        ]
+        found += _exchanges(bound, reaction, residual, known)
+        if found:
+            return f"It would close with {' or '.join(found[:3])}{where}."
+    return "No single compound would close it: correct a coefficient or a formula."
+
+
+def _multiple(residual: dict[str, Fraction], parts: dict[str, Fraction]) -> Fraction | None:
+    """How many times a composition makes up a residual; ``None`` if it does not."""
+    if not parts or set(parts) != set(residual):
+        return None
+    ratios = {residual[element] / parts[element] for element in parts}
+    return ratios.pop() if len(ratios) == 1 else None
+
+
+def _exchanges(
+    bound: BoundNetwork,
+    reaction: BoundReaction,
+    residual: dict[str, Fraction],
+    known: dict[str, dict[str, Fraction]],
+) -> list[str]:
+    """Compounds that would close the balance in place of one that is written."""
+    formulas = dict(bound.formulas)
+    found = []
+    for sign, name, amount, _ in reaction.written:
+        if not amount:
             continue
-        ratios = {residual[element] / parts[element] for element in parts}
-        if len(ratios) == 1:
-            amount = ratios.pop()
-            side = "left" if amount > 0 else "right"
-            text = f"{_amount(abs(amount))} {name} on the {side}"
-            if name in own:
-                found.insert(0, text)
-            else:
-                found.append(text)
-    if not found:
-        return "No single compound would close it: correct a coefficient or a formula."
-    name = found[0].split(" ", 1)[1].rsplit(" on the ", 1)[0]
-    return f"It would close with {' or '.join(found[:2])}; write '? {name}' there."
+        wanted = composition(formulas[name])
+        for element, excess in residual.items():
+            wanted[element] = wanted.get(element, Fraction(0)) - sign * excess / amount
+        wanted = {element: atoms for element, atoms in wanted.items() if atoms}
+        number = "" if amount == 1 else f"{_amount(amount)} "
+        found += [
+            f"{number}{other} in place of {number}{name}"
+            for other, parts in known.items()
+            if wanted and parts == wanted
+        ]
+    return found
 
 
 def one_sided_compounds(bound: BoundNetwork) -> Findings:

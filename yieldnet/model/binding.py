@@ -293,7 +293,8 @@ def _solve(
     for place, (sign, term) in enumerate(terms):
         number = numbers[place]
         if number is not None:
-            solved.append((sign, term.name, number, False))
+            turned = number < 0
+            solved.append((-sign if turned else sign, term.name, abs(number), False))
             continue
         value = values[unknown.index(place)]
         if value < 0:

@@ -6,10 +6,8 @@ rest of the basis is chosen so that it can be inverted. The proof then pivots fr
 
 from __future__ import annotations
 
-from fractions import Fraction
 from typing import TYPE_CHECKING, Any
 
-from yieldnet.foundation.exact import eliminate
 from yieldnet.optimum.basis import Basis
 
 if TYPE_CHECKING:
@@ -17,11 +15,15 @@ if TYPE_CHECKING:
 
     from yieldnet.optimum.problem import Bounds, Problem
 
-__all__ = ["AT_BOUND", "OptlangEngine", "OptlangSession"]
+__all__ = ["AT_BOUND", "PRIME", "OptlangEngine", "OptlangSession"]
 
 AT_BOUND = 1e-7
 """How near a float must come to a bound to count as resting there; solvers keep bounds to about
 1e-7, and a wrong guess costs exact pivots, never a wrong answer [-]."""
+
+
+PRIME = 2**61 - 1
+"""A prime beyond any denominator that a network is written with [-]."""
 
 
 class OptlangEngine:
@@ -87,6 +89,33 @@ class OptlangSession:
         return _guess(problem, [value or 0.0 for value in values], bounds)
 
 
+def _first_independent(problem: Problem, order: list[int]) -> list[int]:
+    """Places in the order of the first columns and row activities that form a basis.
+
+    Eliminated modulo a large prime: should a pivot vanish there by chance, the proof pivots it
+    away.
+    """
+    from flint import nmod_mat
+
+    size, count = len(problem.columns), len(problem.rows)
+    place = {j: at for at, j in enumerate(order)}
+    entries = [0] * (count * (size + count))
+    for i, row in enumerate(problem.matrix.rows):
+        start = i * (size + count)
+        for j, value in row:
+            entries[start + place[j]] = value.numerator * pow(value.denominator, -1, PRIME) % PRIME
+        entries[start + place[size + i]] = PRIME - 1
+    reduced, rank = nmod_mat(count, size + count, entries, PRIME).rref()
+    found: list[int] = []
+    at = 0
+    for i in range(rank):
+        while not int(reduced[i, at]):
+            at += 1
+        found.append(at)
+        at += 1
+    return found
+
+
 def _move(item: Any, bounds: Bounds) -> None:
     low = None if bounds.low is None else float(bounds.low)
     high = None if bounds.high is None else float(bounds.high)
@@ -113,16 +142,7 @@ def _guess(problem: Problem, values: list[float], bounds: list[Bounds]) -> Basis
     order += [j for j in inner if j >= size]
     order += [size + i for i in range(count) if size + i not in between]
     order += [j for j in range(size) if j not in between]
-    place = {j: at for at, j in enumerate(order)}
-    dense = []
-    for i, row in enumerate(problem.matrix.rows):
-        line = [Fraction(0)] * (size + count)
-        for j, value in row:
-            line[place[j]] = value
-        line[place[size + i]] = Fraction(-1)
-        dense.append(line)
-    form = eliminate(dense, size + count)
-    basic = sorted(order[at] for at in form.pivots)
+    basic = sorted(order[at] for at in _first_independent(problem, order))
     chosen = set(basic)
     at_high = frozenset(
         j

@@ -27,6 +27,7 @@ from yieldnet.prediction.layers import (
     maintenance_row,
     off_entries,
     surplus_column,
+    switch_kind,
 )
 
 if TYPE_CHECKING:
@@ -63,6 +64,8 @@ class ConflictMember:
         quantitative, or no change of it alone suffices.
     needs_sd : float or None
         The same in standard deviations [-].
+    then : Fraction or None
+        What it would have to say [unit].
     unit : str
         Unit of ``needs``.
     """
@@ -72,6 +75,7 @@ class ConflictMember:
     needs: Fraction | None
     needs_sd: float | None
     unit: str
+    then: Fraction | None = None
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -193,7 +197,16 @@ class _Search:
             needs=None if needs is None else needs / item.factor,
             needs_sd=float(needs / item.sd) if needs is not None and item.sd else None,
             unit=item.unit,
+            then=None if needs is None else self._then(item, needs) / item.factor,
         )
+
+    def _then(self, item: _Statement, needs: Fraction) -> Fraction:
+        """What a statement would have to say: its value, or the bound that gives way."""
+        low, high = item.held.low, item.held.high
+        if item.sd is not None and low is not None and high is not None:
+            return (low + high) / 2 + needs
+        end = high if needs > 0 else low
+        return (end or _ZERO) + needs
 
     def _needs(self, place: int, item: _Statement) -> Fraction | None:
         others = self.problem(i for i in range(len(self.statements)) if i != place)
@@ -343,7 +356,9 @@ def _network_statements(layers: Layers, bound: BoundNetwork) -> list[_Statement]
     here = {item.name for item in bound.reactions}
     found += [
         _Statement(
-            "knock-out", name, {flux_column(member): shut for member in members if member in here}
+            switch_kind(case, name),
+            name,
+            {flux_column(member): shut for member in members if member in here},
         )
         for name, members in off_entries(case).items()
     ]

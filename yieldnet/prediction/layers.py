@@ -41,6 +41,7 @@ __all__ = [
     "maintenance_row",
     "off_entries",
     "surplus_column",
+    "switch_kind",
     "switched_off",
 ]
 
@@ -83,6 +84,11 @@ def off_entries(case: Case) -> dict[str, tuple[str, ...]]:
     preset = network.strain(case.strain.name) if case.strain else None
     names = (*(preset.off if preset else ()), *(item.name for item in case.knock_outs))
     return {name: network.members(name) for name in names}
+
+
+def switch_kind(case: Case, name: str) -> str:
+    """``knock-out`` for an entry of the case, ``strain entry`` for one of its strain."""
+    return "knock-out" if any(item.name == name for item in case.knock_outs) else "strain entry"
 
 
 @dataclass(frozen=True, slots=True)

@@ -63,6 +63,7 @@ if TYPE_CHECKING:
 __all__ = ["Wanted", "balance_case", "predict_case"]
 
 _CARBON_DIOXIDE = "carbon dioxide"
+_OXYGEN = "oxygen"
 _ZERO = Fraction(0)
 
 
@@ -229,7 +230,7 @@ def _answer(
         coefficients=coefficients,
         terms=terms,
         recoveries=_recoveries(case, terms, layers),
-        respiratory_quotient=_respiratory_quotient(ranges, carbon_dioxide),
+        respiratory_quotient=_respiratory_quotient(case, ranges, carbon_dioxide),
         net_carbon_dioxide=carbon_dioxide,
         movements=movements(optimiser, layers, ranges, point, best),
         carbon_dioxide_need=_carbon_dioxide_need(
@@ -344,8 +345,11 @@ def _terms(case: Case, ranges: AllRanges) -> tuple[EquationTerm, ...]:
     return tuple(found)
 
 
-def _respiratory_quotient(ranges: AllRanges, carbon_dioxide: Range | None) -> Fraction | None:
-    oxygen = ranges.filled.get("oxygen")
+def _respiratory_quotient(
+    case: Case, ranges: AllRanges, carbon_dioxide: Range | None
+) -> Fraction | None:
+    one = Fraction(1)
+    oxygen = Range(one, one) if case.basis.name == _OXYGEN else ranges.filled.get(_OXYGEN)
     if oxygen is None or carbon_dioxide is None or not (oxygen.single and carbon_dioxide.single):
         return None
     if not oxygen.high or carbon_dioxide.low is None:
@@ -368,7 +372,7 @@ def _recoveries(
                 break
             else:
                 content[item.name] = item.formula.degree_of_reduction(reference)
-        if len(content) < len(case.compounds) or content[case.basis.name] <= 0:
+        if len(content) < len(case.compounds) or not any(content.values()):
             continue
         found.append(_recovery(quantity, case, terms, layers, content))
     return tuple(found)
@@ -419,9 +423,13 @@ def _recovery(
             measured += values[0].value * content[item.name]
     return Recovery(
         quantity=quantity,
-        measured=measured / content[case.basis.name] if any_measured else None,
+        measured=measured / content[case.basis.name]
+        if any_measured and content[case.basis.name] > 0
+        else None,
         total=outlet / consumed if unique and consumed else None,
-        shares=tuple((name, share / consumed) for name, share in shares) if unique else (),
+        shares=tuple((name, share / consumed) for name, share in shares)
+        if unique and consumed
+        else (),
     )
 
 

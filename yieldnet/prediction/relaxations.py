@@ -6,12 +6,11 @@ optimum already show that it stays optimal, nothing is solved.
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from fractions import Fraction
 from itertools import combinations
 from typing import TYPE_CHECKING
 
-from yieldnet.audit.flux import closed_network, energy_loop
 from yieldnet.balance.statements import is_exact, kind_of, yield_column
 from yieldnet.model.case import EnergySurplus
 from yieldnet.model.network import GROWTH, CarrierKind, Direction
@@ -23,11 +22,13 @@ from yieldnet.prediction.layers import (
     flux_column,
     off_entries,
     surplus_column,
+    switch_kind,
 )
 
 if TYPE_CHECKING:
     from collections.abc import Mapping, Sequence
 
+    from yieldnet.balance.statements import Statements
     from yieldnet.optimum.problem import Problem
     from yieldnet.optimum.proof import Answer, Optimiser
     from yieldnet.prediction.ladder import Objective
@@ -52,8 +53,9 @@ class Candidate:
     Parameters
     ----------
     kind : str
-        What it is: ``carrier``, ``exchange``, ``source``, ``switch``, ``compound``, ``reaction``,
-        ``measured``, ``demand``, ``condition`` or ``tightening``.
+        What it is: ``carrier``, ``exchange``, ``source``, ``knock-out``, ``strain entry``,
+        ``compound``, ``reaction``, ``measured``, ``written``, ``demand``, ``condition`` or
+        ``tightening``.
     name : str
         Its name.
     columns, rows : mapping of str to Bounds
@@ -251,7 +253,7 @@ def _switch_candidates(layers: Layers) -> list[Candidate]:
         if opened:
             found.append(
                 Candidate(
-                    "switch",
+                    switch_kind(layers.case, name),
                     name,
                     {flux_column(member): ways[member] for member in opened},
                     {},
@@ -328,13 +330,19 @@ def relax(
     bench = _Bench(optimiser, layers, objective, best)
     helpful: list[Relaxation] = []
     tried: list[Candidate] = []
+    not_offered = 0
     for candidate in candidates:
-        if candidate.kind == "reaction" and bench.makes_energy(candidate):
-            continue
-        tried.append(candidate)
         found = bench.outcome((candidate,))
-        if found is not None:
-            helpful.append(found)
+        if found is None:
+            tried.append(candidate)
+            continue
+        if candidate.kind in ("reaction", "exchange") and bench.makes_energy(candidate):
+            if candidate.kind == "reaction":
+                not_offered += 1
+                continue
+            found = replace(found, words=f"{found.words} (which makes energy from nothing)")
+        tried.append(candidate)
+        helpful.append(found)
     singles = len(helpful)
     pairs = not any(item.unbounded or (item.gain or _ZERO) > 0 for item in helpful)
     if pairs:
@@ -355,8 +363,20 @@ def relax(
     return RelaxationReport(
         helpful=tuple(helpful[i] for i in order),
         without_effect=len(tried) - singles,
-        not_offered=len(candidates) - len(tried),
+        not_offered=not_offered,
         pairs=pairs,
+    )
+
+
+def _statement_rows(layers: Layers, statements: Statements) -> frozenset[str]:
+    """Rows of everything the case states, maintenance included."""
+    return frozenset(
+        (
+            "maintenance",
+            *(item.label for item in statements.measured),
+            *(f"demand {item.compound}" for item in statements.demands),
+            *(f"written {item.name}" for item in layers.case.coefficients if is_exact(item)),
+        )
     )
 
 
@@ -370,21 +390,35 @@ class _Bench:
         self.layers = layers
         self.objective = objective
         self.best = best
-        self.closed: Problem | None = None
 
     def makes_energy(self, candidate: Candidate) -> bool:
-        """Whether a reaction backwards makes energy from nothing, asked where it could help."""
-        if self.best.stays_best(candidate.applied(self.best.problem)):
-            return False
-        assert self.layers.bound is not None
-        if self.closed is None:
-            self.closed = closed_network(self.layers.bound)
-        problem = self.closed.with_columns({candidate.name: FREE})
-        return any(
-            energy_loop(self.optimiser, problem, item.name) is not None
-            for item in self.layers.bound.network.carriers
-            if item.kind is CarrierKind.ENERGY
+        """Whether something given back makes energy with nothing crossing the cell boundary."""
+        bound = self.layers.bound
+        assert bound is not None
+        shut = Bounds(_ZERO, _ZERO)
+        statements = self.layers.statements
+        problem = (
+            candidate.applied(self.best.problem)
+            .with_columns({yield_column(name): shut for name, _ in bound.network.crossing})
+            .with_rows(
+                dict.fromkeys(
+                    (
+                        row.name
+                        for row in self.best.problem.rows
+                        if row.name in _statement_rows(self.layers, statements)
+                    ),
+                    FREE,
+                )
+            )
         )
+        for item in bound.network.carriers:
+            if item.kind is CarrierKind.ENERGY:
+                column = surplus_column(item.name)
+                open_problem = problem.with_columns({column: FREE})
+                answer = self.optimiser.optimise(open_problem, {column: Fraction(1)})
+                if answer.status is Status.UNBOUNDED:
+                    return True
+        return False
 
     def outcome(self, parts: Sequence[Candidate]) -> Relaxation | None:
         """Relaxation of one or two candidates together, or ``None`` if it changes nothing."""
@@ -425,8 +459,17 @@ class _Bench:
         )
 
     def _used(self, part: Candidate, answer: Answer) -> list[str]:
+        """Carriers that a best point must draw, the last ones spared first."""
         prefix = exchange_column("")
-        return [name.removeprefix(prefix) for name in part.columns if answer[name] > 0]
+        problem = answer.optimal_face()
+        used = []
+        for column in reversed(list(part.columns)):
+            spared = problem.with_columns({column: Bounds(_ZERO, _ZERO)})
+            if self.optimiser.optimise(spared, {}).status is Status.INFEASIBLE:
+                used.append(column.removeprefix(prefix))
+            else:
+                problem = spared
+        return used[::-1]
 
     def _named(
         self,

@@ -262,6 +262,7 @@ def _why(result: Prediction) -> dict[str, Any]:
                     "name": item.name,
                     "needs": _number(item.needs),
                     "needs_sd": item.needs_sd,
+                    "then": _number(item.then),
                     "unit": item.unit,
                 }
                 for item in result.conflict.members

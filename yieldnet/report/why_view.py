@@ -161,11 +161,13 @@ def conflict_lines(result: Prediction) -> tuple[str, ...]:
 def _member(item: ConflictMember) -> str:
     known = item.kind in item.name or item.kind in ("measured", "condition")
     text = f"'{item.name}'" if known else f"{item.kind} '{item.name}'"
-    if item.needs is not None:
-        text += f": needs {with_sign(item.needs)} {item.unit}"
+    if item.needs is not None and item.then is not None:
+        way = "higher" if item.needs > 0 else "lower"
+        size = f"{figure(abs(item.needs))} {item.unit}"
         if item.needs_sd is not None:
-            text += f" ({item.needs_sd:+.1f} s.d. beyond its band)"
-        text += " if it alone is changed"
+            size += f" or {abs(item.needs_sd):.1f} s.d."
+        text += f": would have to be {figure(item.then)} {item.unit}, {size} {way}, if it alone"
+        text += " gives way"
     return text
 
 
