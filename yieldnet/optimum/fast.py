@@ -1,0 +1,179 @@
+"""A linear problem in floats, moved in place: for long studies that cannot be proven as a whole.
+
+One GLPK object; bounds and objective change, the basis stays warm. Answers are floating-point and
+carry their residual; whoever prints them says so, and proves those that matter.
+"""
+
+from __future__ import annotations
+
+from enum import StrEnum
+from typing import TYPE_CHECKING, Any
+
+from yieldnet.foundation.errors import SolveError
+
+if TYPE_CHECKING:
+    from collections.abc import Iterable, Mapping
+
+    from yieldnet.optimum.problem import Bounds, Problem
+
+__all__ = ["FEASIBILITY", "MAX_ITERATIONS", "FastProblem", "FastStatus"]
+
+FEASIBILITY = 1e-7
+"""How far a float solution may miss a bound or balance; GLPK's own limit [mol/mol]."""
+MAX_ITERATIONS = 200_000
+"""Most pivots of one solve; beyond it the problem is declared unsolvable in floats [-]."""
+
+
+class FastStatus(StrEnum):
+    """How a float solve ended."""
+
+    OPTIMAL = "optimal"
+    INFEASIBLE = "infeasible"
+    UNBOUNDED = "unbounded"
+
+
+class FastProblem:
+    """A problem loaded once into GLPK.
+
+    Parameters
+    ----------
+    problem : Problem
+        Columns, rows and bounds at the start.
+    """
+
+    def __init__(self, problem: Problem) -> None:
+        import swiglpk  # type: ignore[import-untyped]
+
+        self._glpk: Any = swiglpk
+        glpk = self._glpk
+        self.columns = len(problem.columns)
+        self.rows = len(problem.rows)
+        self._entries = problem.matrix.rows
+        self._handle = glpk.glp_create_prob()
+        glpk.glp_add_rows(self._handle, max(1, self.rows))
+        glpk.glp_add_cols(self._handle, self.columns)
+        entries = [
+            (i + 1, j + 1, float(value))
+            for i, row in enumerate(problem.matrix.rows)
+            for j, value in row
+        ]
+        size = len(entries)
+        rows, columns = glpk.intArray(size + 1), glpk.intArray(size + 1)
+        values = glpk.doubleArray(size + 1)
+        for place, (i, j, value) in enumerate(entries, 1):
+            rows[place], columns[place], values[place] = i, j, value
+        glpk.glp_load_matrix(self._handle, size, rows, columns, values)
+        self._control = glpk.glp_smcp()
+        glpk.glp_init_smcp(self._control)
+        self._control.msg_lev = glpk.GLP_MSG_OFF
+        self._control.it_lim = MAX_ITERATIONS
+        for j, column in enumerate(problem.columns):
+            self.bound_column(j, *_floats(column.bounds))
+        for i, row in enumerate(problem.rows):
+            self.bound_row(i, *_floats(row.bounds))
+        self._objective: dict[int, float] = {}
+        self._fresh()
+
+    def __del__(self) -> None:
+        handle = getattr(self, "_handle", None)
+        if handle is not None:
+            self._glpk.glp_delete_prob(handle)
+
+    def _fresh(self) -> None:
+        self._glpk.glp_adv_basis(self._handle, 0)
+
+    def _kind(self, low: float | None, high: float | None) -> tuple[int, float, float]:
+        glpk = self._glpk
+        if low is None and high is None:
+            return glpk.GLP_FR, 0.0, 0.0
+        if high is None and low is not None:
+            return glpk.GLP_LO, low, 0.0
+        if low is None and high is not None:
+            return glpk.GLP_UP, 0.0, high
+        assert low is not None
+        assert high is not None
+        return (glpk.GLP_FX if low == high else glpk.GLP_DB), low, high
+
+    def bound_column(self, column: int, low: float | None, high: float | None) -> None:
+        """Move the bounds of a column; ``None`` for none."""
+        self._glpk.glp_set_col_bnds(self._handle, column + 1, *self._kind(low, high))
+
+    def bound_row(self, row: int, low: float | None, high: float | None) -> None:
+        """Move the bounds of a row; ``None`` for none."""
+        self._glpk.glp_set_row_bnds(self._handle, row + 1, *self._kind(low, high))
+
+    def aim(self, objective: Mapping[int, float], maximise: bool = True) -> None:
+        """Set the objective: coefficient by column."""
+        glpk = self._glpk
+        for j in self._objective:
+            if j not in objective:
+                glpk.glp_set_obj_coef(self._handle, j + 1, 0.0)
+        for j, value in objective.items():
+            glpk.glp_set_obj_coef(self._handle, j + 1, value)
+        self._objective = dict(objective)
+        glpk.glp_set_obj_dir(self._handle, glpk.GLP_MAX if maximise else glpk.GLP_MIN)
+
+    def solve(self, dual: bool = False) -> FastStatus:
+        """Solve from the basis that is there.
+
+        Parameters
+        ----------
+        dual : bool
+            Whether to start with the dual simplex method, which suits moved bounds; the primal
+            suits a new objective.
+
+        Returns
+        -------
+        FastStatus
+            How it ended.
+
+        Raises
+        ------
+        SolveError
+            If floats cannot solve the problem.
+        """
+        glpk = self._glpk
+        for attempt in range(3):
+            self._control.meth = glpk.GLP_DUALP if dual and not attempt else glpk.GLP_PRIMAL
+            code = glpk.glp_simplex(self._handle, self._control)
+            status = glpk.glp_get_status(self._handle)
+            if code == 0 and status == glpk.GLP_OPT:
+                return FastStatus.OPTIMAL
+            if code == 0 and status == glpk.GLP_NOFEAS:
+                return FastStatus.INFEASIBLE
+            if code == 0 and status == glpk.GLP_UNBND:
+                return FastStatus.UNBOUNDED
+            if attempt:
+                self._fresh()
+        raise SolveError("floats cannot solve this problem; the exact path can, if it is small")
+
+    @property
+    def value(self) -> float:
+        """Objective at the solution."""
+        return float(self._glpk.glp_get_obj_val(self._handle))
+
+    def column(self, column: int) -> float:
+        """Value of a column at the solution."""
+        return float(self._glpk.glp_get_col_prim(self._handle, column + 1))
+
+    def values(self, columns: Iterable[int]) -> list[float]:
+        """Values of several columns at the solution."""
+        get, handle = self._glpk.glp_get_col_prim, self._handle
+        return [get(handle, j + 1) for j in columns]
+
+    def residual(self) -> float:
+        """Largest amount by which a row's bounds are missed at the solution."""
+        worst = 0.0
+        for i in range(self.rows):
+            activity = sum(float(value) * self.column(j) for j, value in self._entries[i])
+            low = self._glpk.glp_get_row_lb(self._handle, i + 1)
+            high = self._glpk.glp_get_row_ub(self._handle, i + 1)
+            worst = max(worst, low - activity, activity - high)
+        return worst
+
+
+def _floats(bounds: Bounds) -> tuple[float | None, float | None]:
+    return (
+        None if bounds.low is None else float(bounds.low),
+        None if bounds.high is None else float(bounds.high),
+    )

@@ -1,0 +1,1 @@
+"""Seventh floor: studies - maps over changed cases: knock-outs, additions, trade-offs."""
