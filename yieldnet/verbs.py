@@ -74,10 +74,18 @@ def read_network(path: Path) -> Network:
     >>> read_network("lysine-coryneform").title
     'Coryneform lysine former on glucose'
     """
+    from pathlib import Path
+
+    from yieldnet.foundation.findings import Finding, near
     from yieldnet.reading.network_file import load_network
-    from yieldnet.reading.shipped import find_shipped
+    from yieldnet.reading.shipped import find_shipped, shipped_names
 
     name = os.fspath(path)
+    if not Path(name).suffix and Path(name).name == name and not find_shipped(name):
+        known = shipped_names()
+        hint = near(name, known) or f"Shipped networks: {', '.join(known)}."
+        message = f"network {name!r} is neither a file nor a shipped network"
+        raise InputError([Finding(code="YN513", message=message, hint=hint)])
     network, findings = load_network(str(find_shipped(name) or name))
     if network is None:
         raise InputError(findings.sorted())

@@ -97,7 +97,7 @@ def _mend(bound: BoundNetwork, reaction: BoundReaction, residual: dict[str, Frac
     }
     for known, where in ((own, ""), (library, ", which the network would have to know")):
         found = [
-            f"{_amount(abs(amount))} {name} more on the {'left' if amount > 0 else 'right'}"
+            _change(reaction, name, amount)
             for name, parts in known.items()
             if (amount := _multiple(residual, parts))
         ]
@@ -105,6 +105,16 @@ def _mend(bound: BoundNetwork, reaction: BoundReaction, residual: dict[str, Frac
         if found:
             return f"It would close with {' or '.join(found[:3])}{where}."
     return "No single compound would close it: correct a coefficient or a formula."
+
+
+def _change(reaction: BoundReaction, name: str, amount: Fraction) -> str:
+    """An amount more on the side where it is missing, or less where the compound stands."""
+    side, other = ("left", "right") if amount > 0 else ("right", "left")
+    stands = {place for place, item, _, _ in reaction.written if item == name}
+    there = -1 if other == "left" else 1
+    if there in stands:
+        return f"{_amount(abs(amount))} {name} less on the {other}"
+    return f"{_amount(abs(amount))} {name} more on the {side}"
 
 
 def _multiple(residual: dict[str, Fraction], parts: dict[str, Fraction]) -> Fraction | None:

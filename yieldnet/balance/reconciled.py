@@ -124,7 +124,7 @@ def reconciled_point(
     offset = _nearest(start, corner, weights) if names else ()
     point = {name: targets[name].value + move for name, move in zip(names, offset, strict=True)}
     for item in statements.measured:
-        if item.compound not in point:
+        if not item.sd:
             point[item.compound] = item.value
     return point
 

@@ -39,8 +39,9 @@ _NITROGEN = {"ammonia": -3, "nitrogen": 0, "nitrate": 5}
 _VALENCE = {"C": 4, "H": 1, "O": -2, "P": 5}
 _SULPHUR = {"sulfate": 6, "sulfide": -2}
 _OPEN = {"(": ")", "[": "]", "{": "}"}
-_TOKEN = re.compile(r"([A-Z][a-z]?)|(\d+(?:\.\d+)?)|([()\[\]{}])")
-_CHARGE = re.compile(r"(?:\^?([+-])(\d*)|\^(\d+)([+-]))$")
+_TOKEN = re.compile(r"([A-Z][a-z]?)|(\d+(?:\.\d+)?)|([()\[\]{}])", re.ASCII)
+_UNCLEAR_CHARGE = re.compile(r"(?:[A-Z][a-z]?\d+|.*[\])}]\d+|.*[A-Z][a-z]?\d\d+)[+-]", re.ASCII)
+_CHARGE = re.compile(r"(?:\^?([+-])(\d*)|\^(\d+)([+-]))$", re.ASCII)
 
 
 class FormulaTextError(ValueError):
@@ -195,6 +196,11 @@ def read_formula(text: str) -> Formula:
         raise FormulaTextError(
             f"{plain!r} has a hydrate dot", "Write the sum instead: CuSO4·5H2O is CuSO9H10."
         )
+    if _UNCLEAR_CHARGE.fullmatch(plain):
+        raise FormulaTextError(
+            f"the number before the sign of {plain!r} may be atoms or charge",
+            "Write the charge with a caret or after its sign: Ca^2+, Ca+2, SO4^2-.",
+        )
     charge = 0
     if found := _CHARGE.search(plain):
         sign, size = (found[1], found[2]) if found[1] else (found[4], found[3])
@@ -265,6 +271,8 @@ def _tokens(text: str) -> list[str]:
         found = _TOKEN.match(text, at)
         if found is None:
             hint = "Amounts are written with a point: CH1.8." if text[at] == "," else ""
+            if text[at] == ".":
+                hint = "If this is a hydrate, write the sum of both parts."
             raise FormulaTextError(f"{text[at]!r} in {text!r} belongs to no formula", hint)
         tokens.append(found[0])
         at = found.end()

@@ -38,5 +38,6 @@ def command(network: str, engine: str, as_json: bool) -> None:
         print_findings(out, result.findings)
         count = sum(item.severity != "note" for item in result.findings)
         verdict = "clean" if result.clean else f"{count} finding{'s' if count != 1 else ''}"
-        out.print(f"{len(result.bound.reactions)} reactions audited: {verdict}.")
+        growth = " and growth" if result.network.growth is not None else ""
+        out.print(f"{len(result.network.reactions)} reactions{growth} audited: {verdict}.")
     end(not result.refused)

@@ -28,12 +28,12 @@ def command(name: str | None, as_csv: bool, as_json: bool) -> None:
         compounds_table,
         find_entries,
     )
-    from yieldnet.report.text import console, print_table
+    from yieldnet.report.text import console, print_table, wrapped
 
     entries, names = find_entries(name)
     if not entries:
         hint = near(name or "", names) or "'yieldnet compounds' lists all."
-        click.echo(f"{name!r} is not in the library. {hint}", err=True)
+        click.echo(wrapped(f"{name!r} is not in the library. {hint}"), err=True)
         if as_json:
             click.echo(as_text({"format": FORMAT, "compounds": []}))
         sys.exit(1)

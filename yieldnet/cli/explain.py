@@ -33,7 +33,9 @@ def command(word: str | None, as_json: bool) -> None:
         if not codes and not words:
             known = (*GLOSSARY, *CATALOGUE)
             hint = near(word, known) or "'yieldnet explain' lists all words and codes."
-            click.echo(f"{word!r} is neither a word nor a code. {hint}", err=True)
+            click.echo(wrapped(f"{word!r} is neither a word nor a code. {hint}"), err=True)
+            if as_json:
+                click.echo(as_text({"format": FORMAT, "codes": [], "words": {}}))
             sys.exit(1)
     if as_json:
         form = {

@@ -242,12 +242,15 @@ _ENTRIES = (
     CatalogueEntry("YN603", "The network moved a measured value",
         "The elements alone would have accepted the measurement; the network does not.",
         "Check the measurement, or the reactions and parameters of the network."),
-    CatalogueEntry("YN605", "Too large to prove",
-        "Every printed number is proven in fractions; this problem is too large for that.",
-        "Take a smaller network."),
     CatalogueEntry("YN604", "A measured value was moved",
         "The balances over the cell do not allow all measured values together.",
         "Check the measurement that moved furthest in standard deviations."),
+    CatalogueEntry("YN605", "Too large to prove",
+        "Every printed number is proven in fractions; this problem is too large for that.",
+        "Take a smaller network."),
+    CatalogueEntry("YN606", "Measured beyond the best",
+        "The aim's own measured value is better than the best, beyond two standard deviations.",
+        "Check that measurement, the other measured values, and the reactions of the network."),
 )
 
 CATALOGUE: Mapping[str, CatalogueEntry] = MappingProxyType(

@@ -384,6 +384,17 @@ def _unknowns(
     size = len(unknown)
     form = eliminate([row(element) for element in elements], size + 1)
     if size in form.pivots:
+        # Elements that no ? holds may be what is wrong; they are named first.
+        others = dict.fromkeys(element for part in parts for element in part)
+        out_of_reach = [
+            element for element in others if element not in elements and row(element)[-1]
+        ]
+        if out_of_reach:
+            return _Unsolved(
+                "YN402",
+                f"no ? holds {' or '.join(out_of_reach)}, which does not close",
+                "Correct the numbers, or give a compound with it a ?.",
+            )
         blamed = [
             element
             for element in elements
@@ -411,7 +422,7 @@ def _unknowns(
         ]
         return _Unsolved(
             "YN403",
-            "the balances leave the ? of " + " and ".join(map(repr, loose)) + " free",
+            "the balances leave the ? of " + ", ".join(map(repr, loose)) + " free",
             "Write a number for one of them.",
         )
     return [form.rows[form.pivots.index(column)][size] for column in range(size)]

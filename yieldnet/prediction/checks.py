@@ -6,9 +6,10 @@ from fractions import Fraction
 from typing import TYPE_CHECKING
 
 from yieldnet.balance.reconciled import pool, reconciled_point
-from yieldnet.balance.statements import GROWTH_OVER_UPTAKE
+from yieldnet.balance.statements import GROWTH_OVER_UPTAKE, band
 from yieldnet.foundation.exact import root_of_square
 from yieldnet.foundation.findings import Findings, Severity
+from yieldnet.model.case import AimDirection
 from yieldnet.model.network import BIOMASS, GROWTH
 from yieldnet.optimum.problem import FREE, Bounds
 from yieldnet.optimum.proof import Status
@@ -23,7 +24,13 @@ if TYPE_CHECKING:
     from yieldnet.optimum.ranges import Range
     from yieldnet.prediction.layers import Layers
 
-__all__ = ["growth_conditions", "idle_switches", "moved_values", "standing_still"]
+__all__ = [
+    "beyond_the_best",
+    "growth_conditions",
+    "idle_switches",
+    "moved_values",
+    "standing_still",
+]
 
 
 def growth_conditions(case: Case) -> Findings:
@@ -55,6 +62,30 @@ def standing_still(case: Case, filled: Mapping[str, Range]) -> Findings:
             hint="Give the substrate uptake: then maintenance is told per substrate.",
             severity=Severity.WARNING,
         )
+    return findings
+
+
+def beyond_the_best(layers: Layers, best: Fraction | None) -> Findings:
+    """Measured values of the aim that are better than the best, beyond their band."""
+    findings = Findings()
+    aim = layers.case.aim
+    if aim is None or best is None:
+        return findings
+    for item in layers.statements.set_aside:
+        reach = band(item)
+        assert reach.low is not None
+        assert reach.high is not None
+        most = aim.direction is AimDirection.MOST
+        if reach.low > best if most else reach.high < best:
+            findings.add(
+                "YN606",
+                f"{item.label} is better than the best that the case allows",
+                item.span,
+                left=f"measured {float(item.value):.4g} mol/mol",
+                right=f"best {float(best):.4g} mol/mol",
+                hint="Check this measurement, the others, and the reactions of the network.",
+                severity=Severity.WARNING,
+            )
     return findings
 
 

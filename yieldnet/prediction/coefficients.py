@@ -155,7 +155,24 @@ def freedom_of(
     equations: Mapping[str, CoefficientEquations],
     point: Mapping[str, Fraction] | None,
 ) -> tuple[Freedom, ...]:
-    """Degrees of freedom of each rung; measured coefficients are known from their rung on."""
+    """Degrees of freedom of each rung; measured coefficients are known from their rung on.
+
+    Parameters
+    ----------
+    optimiser : Optimiser
+        Solves and proves.
+    layers : Layers
+        The problems.
+    equations : mapping of str to CoefficientEquations
+        Equalities of each rung.
+    point : mapping of str to Fraction or None
+        Reconciled point; without one nothing is said of signs.
+
+    Returns
+    -------
+    tuple of Freedom
+        One a rung.
+    """
     measured = layers.statements.measured_compounds()
     found = []
     for rung in layers.rungs:

@@ -56,9 +56,12 @@ def respiratory_quotient(
     """Carbon dioxide given off per oxygen taken up, where both are unique [mol/mol]."""
     one = Fraction(1)
     oxygen = Range(one, one) if case.basis.name == _OXYGEN else ranges.filled.get(_OXYGEN)
+    coefficient = case.coefficient(_OXYGEN)
+    if oxygen is not None and coefficient is not None:
+        oxygen = oxygen if coefficient.side is Direction.CONSUMED else oxygen.turned()
     if oxygen is None or carbon_dioxide is None or not (oxygen.single and carbon_dioxide.single):
         return None
-    if not oxygen.high or carbon_dioxide.low is None:
+    if oxygen.high is None or oxygen.high <= 0 or carbon_dioxide.low is None:
         return None
     return carbon_dioxide.low / oxygen.high
 
@@ -146,7 +149,26 @@ def carbon_dioxide_need(
     objective: Objective | None,
     optimiser: Optimiser,
 ) -> CarbonDioxideNeed | None:
-    """Net uptake of carbon dioxide that every best point needs, and the best without it."""
+    """Net uptake of carbon dioxide that every best point needs, and the best without it.
+
+    Parameters
+    ----------
+    layers : Layers
+        The problems.
+    point : mapping of str to Fraction
+        Reconciled point.
+    carbon_dioxide : Range or None
+        Net carbon dioxide at the aim, given off positive [mol/mol basis].
+    objective : Objective or None
+        The aim.
+    optimiser : Optimiser
+        Solves and proves.
+
+    Returns
+    -------
+    CarbonDioxideNeed or None
+        ``None`` if some best point takes none up.
+    """
     if objective is None or carbon_dioxide is None:
         return None
     if carbon_dioxide.high is None or carbon_dioxide.high >= 0 or carbon_dioxide.low is None:

@@ -170,6 +170,7 @@ def _answer(ready: Prepared, wanted: Wanted) -> Prediction:
     else:
         outcome = Outcome.SOLVED
     findings.extend(checks.moved_values(optimiser, layers, point))
+    findings.extend(checks.beyond_the_best(layers, best.value if best is not None else None))
     ranges = find_ranges(optimiser, layers, point, best)
     findings.extend(checks.standing_still(case, ranges.filled))
     aim_percent = _aim_percent(layers, ladder)

@@ -258,7 +258,10 @@ class _Reader:
                 value_node = inner.need("formula", "Give its formula.")
             else:
                 value_node = value
+            organism = find_biomass(value_node.text) if value_node else None
             formula = self._formula(value_node, label) if value_node else None
+            if ash is None and organism is not None and organism.ash is not None:
+                ash = WrittenNumber(organism.ash, str(organism.ash))
             self.book.define(key.text, None, key.span)
             if formula is None:
                 continue

@@ -158,7 +158,8 @@ class StatementReader:
     def _own_coefficient(self, key: Node, what: str) -> str | None:
         """Name of a coefficient that a statement speaks of, or ``None`` with a finding."""
         name = self.book.resolve(key.text, key.span) if self.known else None
-        if name is None:
+        if name is None or not self.compound(name).formula.elements:
+            # A compound whose network could not be read has no formula; that is told there.
             return None
         if name == self.basis.name:
             self.findings.add(

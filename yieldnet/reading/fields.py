@@ -124,7 +124,24 @@ def _split_name(joined: str, parts: Sequence[Node], findings: Findings, how: str
 def unsplit_pairs(
     node: Node, label: str, findings: Findings, known: Sequence[str]
 ) -> tuple[tuple[Node, Node], ...]:
-    """Pairs of a mapping; a name in braces that its commas have split is reported and left out."""
+    """Pairs of a mapping; a name in braces that its commas have split is reported and left out.
+
+    Parameters
+    ----------
+    node : Node
+        The mapping.
+    label : str
+        Its name in messages.
+    findings : Findings
+        Receives what is wrong.
+    known : sequence of str
+        Names that may be meant.
+
+    Returns
+    -------
+    tuple of (Node, Node)
+        Keys and values.
+    """
     pairs = entries(node, label, findings)
     if not node.flow:
         return pairs

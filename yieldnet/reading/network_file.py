@@ -139,6 +139,7 @@ class _Reader:
     carriers: list[Carrier] = field(default_factory=list)
     own: list[Compound] = field(default_factory=list)
     parameters: list[Parameter] = field(default_factory=list)
+    declared: list[str] = field(default_factory=list)
     crossing_spans: dict[str, SourceSpan] = field(default_factory=dict)
 
     def __post_init__(self) -> None:
@@ -193,6 +194,7 @@ class _Reader:
     def _parameters(self, node: Node | None) -> None:
         for key, value in entries(node, "'parameters'", self.findings) if node else ():
             label = f"parameter {key.text!r}"
+            self.declared.append(key.text)
             if not key.text.isidentifier():
                 self.findings.add(
                     "YN206",
@@ -491,7 +493,7 @@ class _Reader:
         equation = read_equation(
             written, node.span, label, self.findings, self.book.resolve, node.locate
         )
-        known = [item.name for item in self.parameters]
+        known = self.declared
         for _, term in equation.terms() if equation else ():
             if not isinstance(term.coefficient, Expression):
                 continue

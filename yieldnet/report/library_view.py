@@ -160,7 +160,7 @@ def network_lines(name: str, network: Network) -> Lines:
     ]
     for paragraph in network.about.split("\n"):
         if paragraph.strip():
-            lines.append((wrapped(paragraph.strip()), None))
+            lines += [(wrapped(paragraph.strip()), None), ("", None)]
     for label, direction in (
         ("taken up", Direction.CONSUMED),
         ("given off", Direction.PRODUCED),

@@ -18,7 +18,7 @@ __all__ = ["WIDTH", "console", "print_findings", "print_prediction", "print_tabl
 
 WIDTH = 80
 """Widest line [characters]."""
-_BAR = 10
+_BAR = 8
 _STYLE = {"error": "bold red", "warning": "yellow", "note": "dim"}
 
 
@@ -69,6 +69,8 @@ def print_table(out: Console, table: Table) -> None:
     """
     _heading(out, table.title)
     if not table.rows:
+        if table.note:
+            out.print(wrapped(table.note, "  "), style="dim")
         return
     widths = [
         max(len(cell) for cell in (heading, *(row[j] for row in table.rows)))
@@ -76,7 +78,8 @@ def print_table(out: Console, table: Table) -> None:
     ]
     # The widest column gives way where the table would not fit.
     widest = widths.index(max(widths))
-    widths[widest] -= max(0, sum(widths) + 2 * len(widths) - 1 - WIDTH)
+    taken = sum(widths) + 2 * len(widths) - 1 + (_BAR + 2 if table.bars else 0)
+    widths[widest] -= max(0, taken - WIDTH)
     right = [
         bool(heading) and all(_is_figure(row[j]) for row in table.rows)
         for j, heading in enumerate(table.columns)

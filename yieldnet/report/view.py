@@ -149,6 +149,8 @@ def _headline(result: Prediction) -> str:
         codes = {"YN601": "infeasible", "YN602": "unbounded"}
         reasons = [item.message for item in result.findings if item.code in codes]
         return reasons[0] if reasons else str(result.outcome)
+    if case.aim is not None and case.aim.is_energy and not _has_network(result):
+        return f"the aim is spare {case.aim.compound}, which elements alone do not know"
     if aim is None or aim.value is None:
         return "no aim: every coefficient is told by its range"
     unit = "mol/mol"
@@ -191,7 +193,8 @@ def _coefficients(result: Prediction, unit: str) -> Table:
     for item in result.coefficients:
         factor = _factor(item, unit)
         if factor is None:
-            rows.append((item.compound, f"no {unit}", *("",) * (4 if with_network else 2)))
+            blank = ("",) * (3 if with_network else 1)
+            rows.append((item.compound, f"no {unit}", *blank, str(item.status)))
             continue
         measured = ""
         if item.reconciled is not None:

@@ -154,7 +154,12 @@ def conflict_lines(result: Prediction) -> tuple[str, ...]:
     few = "the least number" if conflict.least else "none of them can be spared"
     heading = f"These {count} statements cannot hold together ({few}):"
     if count == 1:
-        heading = f"The network cannot keep this statement at all.{lacking}"
+        who = (
+            "The network"
+            if any(item.layer == "pathways" for item in result.freedom)
+            else "Elements"
+        )
+        heading = f"{who} cannot keep this statement at all.{lacking}"
     return (heading, *(f"- {_member(item)}" for item in conflict.members))
 
 

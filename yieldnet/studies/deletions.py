@@ -180,9 +180,9 @@ def delete_all(
     tick : callable, optional
         Called with the number of sets done.
 
-    Yields
-    ------
-    Deletion
+    Returns
+    -------
+    iterator of Deletion
         One a set, the empty set first.
     """
     twins = run.twins or range(len(run.groups))
