@@ -15,10 +15,12 @@ if TYPE_CHECKING:
         audit,
         balance,
         explain,
+        knockout,
         predict,
         read_case,
         read_network,
         schema,
+        screen,
     )
 
 __all__ = [
@@ -28,10 +30,12 @@ __all__ = [
     "audit",
     "balance",
     "explain",
+    "knockout",
     "predict",
     "read_case",
     "read_network",
     "schema",
+    "screen",
 ]
 __version__ = "0.1.0"
 

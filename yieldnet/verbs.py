@@ -8,16 +8,28 @@ from typing import TYPE_CHECKING, Any
 from yieldnet.foundation.errors import InputError
 
 if TYPE_CHECKING:
-    from collections.abc import Sequence
+    from collections.abc import Callable, Sequence
 
     from yieldnet.audit.audit import AuditResult
     from yieldnet.model.case import Case
     from yieldnet.model.network import Network
     from yieldnet.prediction.result import Prediction
+    from yieldnet.studies.knockout import KnockOutResult
+    from yieldnet.studies.screen import ScreenResult
 
     Path = str | os.PathLike[str]
 
-__all__ = ["audit", "balance", "explain", "predict", "read_case", "read_network", "schema"]
+__all__ = [
+    "audit",
+    "balance",
+    "explain",
+    "knockout",
+    "predict",
+    "read_case",
+    "read_network",
+    "schema",
+    "screen",
+]
 
 
 def read_case(path: Path) -> Case:
@@ -258,6 +270,101 @@ def schema(file: str) -> dict[str, Any]:
     from yieldnet.reading.schema import case_schema, network_schema
 
     return {"case": case_schema, "network": network_schema}[file]()
+
+
+def knockout(case: Case | Path, names: Sequence[str], *, engine: str = "glpk") -> KnockOutResult:
+    """A case before and after switching reactions or groups off.
+
+    Parameters
+    ----------
+    case : Case or path
+        The question with a product as its aim, or the path of its file.
+    names : sequence of str
+        Reactions or groups of its network.
+    engine : {"glpk", "optlang"}
+        Solver whose answer is proven in fractions.
+
+    Returns
+    -------
+    KnockOutResult
+        Both answers, and what the cell would do [mol/mol basis].
+
+    Raises
+    ------
+    InputError
+        If the files must be refused, a name is unknown, or no uptake is left.
+
+    Examples
+    --------
+    >>> result = knockout("examples/lysine/case.yaml", ["malic enzyme"])
+    >>> result.after.aim.value
+    Fraction(3, 4)
+    """
+    from yieldnet.studies.knockout import knock_out
+
+    return knock_out(_as_case(case), names, engine)
+
+
+def screen(
+    case: Case | Path,
+    *,
+    depth: int = 1,
+    groups: bool = False,
+    score: str = "guaranteed",
+    growth_share: float = 0.1,
+    yes: bool = False,
+    engine: str = "glpk",
+    tick: Callable[[int, int], None] | None = None,
+) -> ScreenResult:
+    """All knock-outs of a case to a depth, ranked by what they do for the product.
+
+    Parameters
+    ----------
+    case : Case or path
+        The question with growth and a product as its aim, or the path of its file.
+    depth : int
+        Most knock-outs at once [-].
+    groups : bool
+        Whether groups are switched off as wholes.
+    score : {"guaranteed", "product", "product-growth"}
+        What is ranked.
+    growth_share : float
+        Required growth for ``product``, as a share of the most [-].
+    yes : bool
+        Whether it may take longer than a minute.
+    engine : {"glpk", "optlang"}
+        Solver whose answers prove the entries at the top.
+    tick : callable, optional
+        Called with the sets done and the sets in all.
+
+    Returns
+    -------
+    ScreenResult
+        Ranked sets.
+
+    Raises
+    ------
+    InputError
+        If the case cannot be studied, or the screen would take too long.
+
+    Examples
+    --------
+    >>> result = screen("examples/succinate-from-xylose/case.yaml", depth=2)
+    >>> result.entries[0].names
+    ('alcohol dehydrogenase', 'lactate dehydrogenase')
+    """
+    from yieldnet.studies.screen import Score, screen_case
+
+    return screen_case(
+        _as_case(case),
+        depth=depth,
+        groups=groups,
+        score=Score(score),
+        growth_share=growth_share,
+        confirmed=yes,
+        engine=engine,
+        tick=tick,
+    )
 
 
 def _as_case(case: Case | Path) -> Case:

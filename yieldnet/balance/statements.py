@@ -81,13 +81,16 @@ def statements_of(case: Case) -> Statements:
     relative variances add.
     """
     found: list[Measurement] = list(case.measured)
+    own = case.aim.compound if case.aim and not case.aim.is_energy else None
     for item in case.coefficients:
-        if item.written is not None and item.written.last_place is not None:
+        # An exact coefficient is a row of its own, unless it is the aim's, which is set aside.
+        if item.written is not None and (item.written.last_place is not None or item.name == own):
+            place = item.written.last_place
             found.append(
                 Measurement(
                     compound=item.name,
                     value=item.written.value,
-                    sd=item.written.last_place / (2 * BAND),
+                    sd=None if place is None else place / (2 * BAND),
                     text=item.written.text,
                     label=f"written {item.name}",
                     span=item.span,
@@ -96,7 +99,6 @@ def statements_of(case: Case) -> Statements:
     growth = _growth_over_uptake(case)
     if growth is not None:
         found.append(growth)
-    own = case.aim.compound if case.aim and not case.aim.is_energy else None
     return Statements(
         measured=tuple(item for item in found if item.compound != own),
         set_aside=tuple(item for item in found if item.compound == own),
@@ -164,8 +166,10 @@ def add_statement_rows(builder: ProblemBuilder, case: Case, statements: Statemen
 
     The functions below give the free rows their bounds.
     """
+    aim = case.aim.compound if case.aim and not case.aim.is_energy else ""
     for item in case.coefficients:
-        if is_exact(item):
+        # The aim's own coefficient is set aside, as its measured values are.
+        if is_exact(item) and item.name != aim:
             assert item.written is not None
             builder.add_row(
                 f"written {item.name}",

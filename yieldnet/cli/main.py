@@ -14,6 +14,8 @@ _VERBS = {
     "predict": "Yield coefficients by elements and by network.",
     "balance": "Yield coefficients by elements alone.",
     "audit": "What is wrong or doubtful in a network.",
+    "knockout": "One idea, before and after.",
+    "screen": "All knock-outs to a depth, ranked.",
     "compounds": "The compound and biomass library.",
     "networks": "The networks that ship with yieldnet.",
     "explain": "What a word or a finding code means.",

@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING, Any, NoReturn
 import click
 
 if TYPE_CHECKING:
-    from collections.abc import Callable
+    from collections.abc import Callable, Sequence
 
     from yieldnet.foundation.errors import YieldnetError
     from yieldnet.foundation.findings import Finding
@@ -74,7 +74,7 @@ def end(good: bool) -> None:
         sys.exit(1)
 
 
-def write_csv(header: tuple[str, ...], rows: list[tuple[str, ...]]) -> None:
+def write_csv(header: Sequence[str], rows: Sequence[Sequence[str]]) -> None:
     """Write a table as CSV to the standard output."""
     import csv
 

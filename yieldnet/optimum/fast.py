@@ -49,6 +49,8 @@ class FastProblem:
         self.columns = len(problem.columns)
         self.rows = len(problem.rows)
         self._entries = problem.matrix.rows
+        # The basis that GLPK builds to begin with is announced on the terminal otherwise.
+        glpk.glp_term_out(glpk.GLP_OFF)
         self._handle = glpk.glp_create_prob()
         glpk.glp_add_rows(self._handle, max(1, self.rows))
         glpk.glp_add_cols(self._handle, self.columns)
@@ -76,8 +78,9 @@ class FastProblem:
 
     def __del__(self) -> None:
         handle = getattr(self, "_handle", None)
-        if handle is not None:
-            self._glpk.glp_delete_prob(handle)
+        free = getattr(self._glpk, "glp_delete_prob", None) if handle is not None else None
+        if free is not None:  # at the end of the interpreter the library may be gone already
+            free(handle)
 
     def _fresh(self) -> None:
         self._glpk.glp_adv_basis(self._handle, 0)

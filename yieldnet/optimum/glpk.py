@@ -74,8 +74,9 @@ class GlpkSession:
 
     def __del__(self) -> None:
         handle = getattr(self, "_handle", None)
-        if handle is not None:
-            self._glpk.glp_delete_prob(handle)
+        free = getattr(self._glpk, "glp_delete_prob", None) if handle is not None else None
+        if free is not None:  # at the end of the interpreter the library may be gone already
+            free(handle)
 
     def suggest(self, problem: Problem, objective: Mapping[int, float], maximise: bool) -> Basis:
         """Basis at which GLPK's primal simplex stopped."""

@@ -331,7 +331,7 @@ def _coefficient_statements(layers: Layers) -> list[_Statement]:
     for item in layers.case.coefficients:
         column = yield_column(item.name)
         direction = layers.bound.network.direction(item.name) if layers.bound else None
-        if is_exact(item):
+        if is_exact(item) and item.name != (layers.case.aim.compound if layers.case.aim else ""):
             assert item.written is not None
             value = item.written.value
             label = f"written {item.name}"
@@ -370,7 +370,7 @@ def _network_statements(layers: Layers, bound: BoundNetwork) -> list[_Statement]
                 "condition",
                 "energy surplus: none",
                 {name: bounds for name, bounds in energy.items() if bounds.fixed},
-                {"maintenance": need} if need else {},
+                {"maintenance": Bounds(None, need.low)} if need else {},
             )
         )
     network = case.network

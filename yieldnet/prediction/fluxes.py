@@ -143,27 +143,49 @@ def find_fluxes(optimiser: Optimiser, layers: Layers, best: Answer) -> Fluxes:
 
 
 def _loops(optimiser: Optimiser, layers: Layers, names: list[str]) -> tuple[tuple[str, ...], ...]:
-    """Loops that turn with nothing crossing and no energy made or spent."""
+    """Loops that turn with nothing crossing and no energy made or spent, each with least flux."""
     assert layers.bound is not None
-    closed = closed_network(layers.bound)
-    allowed = set(names)
+    problem, backward = _one_way_loops(closed_network(layers.bound), frozenset(names))
+    size = {column.name: _ONE for column in problem.columns if column.bounds == _MADE}
     shut = Bounds(_ZERO, _ZERO)
-    bounds: dict[str, Bounds] = {}
-    for column in closed.columns:
-        # Crossing compounds and surpluses are no reactions, so they are shut with the rest.
-        low = -_ONE if column.bounds == FREE else _ZERO
-        bounds[column.name] = Bounds(low, _ONE) if column.name in allowed else shut
-    problem = closed.with_columns(bounds)
     found: list[tuple[str, ...]] = []
     met: set[str] = set()
     for name in names:
-        if name in met:
-            continue
-        for maximise in (True, False):
-            answer = optimiser.optimise(problem, {name: _ONE}, maximise)
-            if answer.status is Status.OPTIMAL and answer[name]:
-                loop = tuple(other for other in names if answer[other])
+        for way in (name, backward.get(name, "")):
+            if name in met or not way:
+                continue
+            other = backward.get(name, "") if way == name else name
+            turned = {way: Bounds(_ONE, _ONE), **({other: shut} if other else {})}
+            answer = optimiser.optimise(problem.with_columns(turned), size, maximise=False)
+            if answer.status is Status.OPTIMAL:
+                loop = tuple(
+                    item
+                    for item in names
+                    if answer[item] or (item in backward and answer[backward[item]])
+                )
                 met.update(loop)
                 found.append(loop)
-                break
     return tuple(found)
+
+
+def _one_way_loops(closed: Problem, allowed: frozenset[str]) -> tuple[Problem, dict[str, str]]:
+    """Closed network with a column for each way of each reaction, so that sizes can be summed."""
+    columns = []
+    entries = [list(row) for row in closed.matrix.rows]
+    backward: dict[str, str] = {}
+    reversible = []
+    for j, column in enumerate(closed.columns):
+        # Crossing compounds and surpluses are no reactions, so they are shut with the rest.
+        inside = column.name in allowed
+        columns.append(Column(name=column.name, bounds=_MADE if inside else Bounds(_ZERO, _ZERO)))
+        if inside and column.bounds == FREE:
+            reversible.append(j)
+    for j in reversible:
+        name = closed.columns[j].name
+        backward[name] = f"{name} backwards"
+        at = len(columns)
+        columns.append(Column(name=backward[name], bounds=_MADE))
+        for row in entries:
+            row += [(at, -value) for k, value in row if k == j]
+    matrix = Matrix(tuple(tuple(row) for row in entries), len(columns))
+    return Problem(columns=tuple(columns), rows=closed.rows, matrix=matrix), backward

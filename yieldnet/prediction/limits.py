@@ -118,8 +118,9 @@ def _statements(layers: Layers) -> list[Target]:
         own = [item for item in statements.measured if item.compound == name]
         move = {item.label: own[0].factor for item in own}
         found.append((kind_of(own[0]), own[0].label, move, own[0].unit))
+    aim = layers.case.aim.compound if layers.case.aim else ""
     for coefficient in layers.case.coefficients:
-        if is_exact(coefficient):
+        if is_exact(coefficient) and coefficient.name != aim:
             label = f"written {coefficient.name}"
             found.append(("written", label, {label: _ONE}, "mol/mol"))
     for item in statements.demands:

@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING
 
 from yieldnet.balance.statements import with_bands
 from yieldnet.foundation.errors import InputError
-from yieldnet.foundation.findings import Findings
+from yieldnet.foundation.findings import Finding, Findings, Severity
 from yieldnet.model.network import Direction
 from yieldnet.optimum.engine import engine_named
 from yieldnet.optimum.proof import Optimiser, Status
@@ -156,6 +156,8 @@ def _answer(ready: Prepared, wanted: Wanted) -> Prediction:
     )
     if point is None:
         conflict = find_conflict(optimiser, layers)
+        if wanted.fluxes or wanted.proof or wanted.order:
+            findings.extend(_asked_in_vain(case, wanted))
         findings.extend(_why_infeasible(layers, optimiser, conflict))
         return replace(answer, findings=findings.sorted(), conflict=conflict)
     if best is not None and best.status is Status.UNBOUNDED:
@@ -180,8 +182,10 @@ def _answer(ready: Prepared, wanted: Wanted) -> Prediction:
     coefficient = case.coefficient(CARBON_DIOXIDE)
     if carbon_dioxide and coefficient and coefficient.side is Direction.CONSUMED:
         carbon_dioxide = carbon_dioxide.turned()
+    if best is None and (wanted.fluxes or wanted.proof or wanted.order):
+        findings.extend(_asked_in_vain(case, wanted))
     if best is not None and objective is not None and bound is not None:
-        answer = _why(answer, layers, objective, best, point, optimiser, wanted)
+        answer = _why(answer, layers, objective, best, point, optimiser, wanted, findings)
     return replace(
         answer,
         outcome=outcome,
@@ -207,11 +211,20 @@ def _why(
     point: Mapping[str, Fraction],
     optimiser: Optimiser,
     wanted: Wanted,
+    findings: Findings,
 ) -> Prediction:
     """What holds the best value back, and what was asked for besides."""
     order: tuple[tuple[str, Fraction | None], ...] | str = ()
     if wanted.order:
         order = ladder_in_order(optimiser, layers, objective, point, wanted.order)
+        if isinstance(order, str):
+            doubt = Finding(
+                code="YN607",
+                message=f"another order of the rungs cannot be shown: {order}",
+                where=answer.case.span,
+                severity=Severity.WARNING,
+            )
+            findings.extend([doubt])
     return replace(
         answer,
         relaxations=relax(optimiser, layers, objective, best),
@@ -221,6 +234,28 @@ def _why(
         fluxes=find_fluxes(optimiser, layers, best) if wanted.fluxes else None,
         certificate=certificate(optimiser, layers, best) if wanted.proof else None,
     )
+
+
+def _asked_in_vain(case: Case, wanted: Wanted) -> Findings:
+    """Say that what was asked for needs a best value, and there is none."""
+    findings = Findings()
+    asked = [
+        name
+        for name, given in (
+            ("fluxes", wanted.fluxes),
+            ("proof", wanted.proof),
+            ("order", bool(wanted.order)),
+        )
+        if given
+    ]
+    findings.add(
+        "YN607",
+        f"{' and '.join(asked)} asked for, and there is no best value to show them at",
+        case.span,
+        hint="Give the case an aim that has a best value.",
+        severity=Severity.WARNING,
+    )
+    return findings
 
 
 def _aim_without_value(case: Case) -> AimValue | None:

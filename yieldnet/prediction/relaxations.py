@@ -349,7 +349,8 @@ def relax(
         offered = [item for item in tried if item.kind != "tightening"]
         for pair in combinations(offered, 2):
             found = bench.outcome(pair)
-            if found is not None:
+            turned = [item for item in pair if item.kind == "reaction"]
+            if found is not None and not (turned and bench.makes_energy(*turned)):
                 helpful.append(found)
     order = sorted(
         range(len(helpful)),
@@ -375,7 +376,7 @@ def _statement_rows(layers: Layers, statements: Statements) -> frozenset[str]:
             "maintenance",
             *(item.label for item in statements.measured),
             *(f"demand {item.compound}" for item in statements.demands),
-            *(f"written {item.name}" for item in layers.case.coefficients if is_exact(item)),
+            *(f"written {item.name}" for item in layers.case.coefficients),
         )
     )
 
@@ -391,24 +392,25 @@ class _Bench:
         self.objective = objective
         self.best = best
 
-    def makes_energy(self, candidate: Candidate) -> bool:
+    def makes_energy(self, *candidates: Candidate) -> bool:
         """Whether something given back makes energy with nothing crossing the cell boundary."""
         bound = self.layers.bound
         assert bound is not None
         shut = Bounds(_ZERO, _ZERO)
         statements = self.layers.statements
-        problem = (
-            candidate.applied(self.best.problem)
-            .with_columns({yield_column(name): shut for name, _ in bound.network.crossing})
-            .with_rows(
-                dict.fromkeys(
-                    (
-                        row.name
-                        for row in self.best.problem.rows
-                        if row.name in _statement_rows(self.layers, statements)
-                    ),
-                    FREE,
-                )
+        problem = self.best.problem
+        for candidate in candidates:
+            problem = candidate.applied(problem)
+        problem = problem.with_columns(
+            {yield_column(name): shut for name, _ in bound.network.crossing}
+        ).with_rows(
+            dict.fromkeys(
+                (
+                    row.name
+                    for row in self.best.problem.rows
+                    if row.name in _statement_rows(self.layers, statements)
+                ),
+                FREE,
             )
         )
         for item in bound.network.carriers:

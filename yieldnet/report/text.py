@@ -3,10 +3,11 @@
 from __future__ import annotations
 
 import textwrap
+from contextlib import contextmanager
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
-    from collections.abc import Iterable
+    from collections.abc import Callable, Iterable, Iterator
 
     from rich.console import Console
 
@@ -14,7 +15,15 @@ if TYPE_CHECKING:
     from yieldnet.report.table import Table
     from yieldnet.report.view import PredictionView
 
-__all__ = ["WIDTH", "console", "print_findings", "print_prediction", "print_table", "wrapped"]
+__all__ = [
+    "WIDTH",
+    "console",
+    "print_findings",
+    "print_prediction",
+    "print_table",
+    "progress",
+    "wrapped",
+]
 
 WIDTH = 80
 """Widest line [characters]."""
@@ -109,6 +118,28 @@ def print_table(out: Console, table: Table) -> None:
 def _is_figure(cell: str) -> bool:
     words = ("unbounded", "impossible", "none", "ever")
     return not cell or cell[0].isdigit() or cell[0] in "+-(" or cell.startswith(words)
+
+
+@contextmanager
+def progress(label: str) -> Iterator[Callable[[int, int], None]]:
+    """Progress bar on the error stream, as a function of what is done and what there is in all.
+
+    Parameters
+    ----------
+    label : str
+        What is counted.
+
+    Returns
+    -------
+    context manager
+        Gives the function to call.
+    """
+    from rich.progress import BarColumn, Progress, TextColumn, TimeRemainingColumn
+
+    columns = (TextColumn(label), BarColumn(), TimeRemainingColumn())
+    with Progress(*columns, console=console(stderr=True), transient=True) as bar:
+        task = bar.add_task(label)
+        yield lambda done, total: bar.update(task, completed=done, total=total)
 
 
 def print_findings(out: Console, findings: Iterable[Finding]) -> None:

@@ -63,7 +63,7 @@ def relaxations_table(result: Prediction) -> Table | None:
     ]
     notes = [f"{item.words} there is no best value: {item.reason}." for item in endless[:1]]
     if len(endless) > 1:
-        notes.append(f"The same {', '.join(item.words for item in endless[1:])}.")
+        notes.append(f"Nor is there one {', '.join(item.words for item in endless[1:])}.")
     notes += [
         f"{item.words}, {item.reason}."
         for item in report.helpful
@@ -77,7 +77,9 @@ def relaxations_table(result: Prediction) -> Table | None:
     if report.pairs:
         notes.append("Nothing helps alone, so pairs were tried.")
     return Table(
-        title="What would give it back, one change at a time, mol/mol",
+        title="What would give it back, "
+        + ("two changes" if report.pairs else "one change")
+        + " at a time, mol/mol",
         columns=("change", "best", "gain"),
         rows=tuple(rows),
         note=" ".join(note[0].upper() + note[1:] for note in notes),
@@ -205,7 +207,8 @@ def fluxes_table(result: Prediction) -> Table | None:
         if item.flux or not item.range.single
     )
     idle = sum(1 for item in fluxes.answers if not item.flux and item.range.single)
-    notes = [f"{_counted(idle, 'reaction')} stand still in every best point."]
+    stand = "stands" if idle == 1 else "stand"
+    notes = [f"{_counted(idle, 'reaction')} {stand} still in every best point."]
     notes += [
         f"Loop that could turn for nothing, left out: {', '.join(loop)}." for loop in fluxes.loops
     ]
