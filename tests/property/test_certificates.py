@@ -90,7 +90,9 @@ def _limits(case: Case, name: str, point: Mapping[str, Fraction]) -> Limits:
     if item.side is not Direction.EITHER:
         lows.append(ZERO)
     exact = [point[name]] if name in point else []
-    if item.written is not None and item.written.last_place is None:
+    # The aim's own coefficient is set aside, exact or not.
+    own = case.aim is not None and case.aim.compound == name
+    if item.written is not None and item.written.last_place is None and not own:
         exact.append(item.written.value)
     lows += exact
     highs += exact

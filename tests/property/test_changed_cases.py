@@ -7,7 +7,7 @@ from fractions import Fraction
 from random import Random
 from typing import TYPE_CHECKING, TypeVar
 
-from hypothesis import given, settings
+from hypothesis import assume, given, settings
 from hypothesis import strategies as st
 
 from tests.property.answers import assert_equal_up_to, lacks_nothing, no_better, tell, within

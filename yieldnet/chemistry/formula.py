@@ -93,7 +93,9 @@ class Formula:
             parts.append(symbol + ("" if amount == 1 else digits))
         if self.charge:
             size = "" if abs(self.charge) == 1 else str(abs(self.charge))
-            parts.append(("+" if self.charge > 0 else "-") + size)
+            sign = ("+" if self.charge > 0 else "-") + size
+            unclear = _UNCLEAR_CHARGE.fullmatch("".join(parts) + sign)
+            parts.append(f"^{sign}" if unclear else sign)
         return "".join(parts)
 
     @property
