@@ -176,8 +176,8 @@ def _statements(case: Case, bound: BoundNetwork) -> list[Statement]:
         found.append(Statement("demand", label, (row(demand.compound, bounds),), demand.factor))
     for item in case.coefficients:
         # The aim's own coefficient is set aside, exact or not.
-        own = case.aim is not None and case.aim.compound == item.name
-        if item.written is not None and item.written.last_place is None and not own:
+        is_aim = case.aim is not None and case.aim.compound == item.name
+        if item.written is not None and item.written.last_place is None and not is_aim:
             exact = Bounds(item.written.value, item.written.value)
             found.append(Statement("written", f"written {item.name}", (row(item.name, exact),)))
         if item.side is not Direction.EITHER and ways[item.name] is Direction.EITHER:
