@@ -332,7 +332,7 @@ def test_the_folder_holds_cases_and_networks_and_nothing_else() -> None:
         for item in FOLDER.iterdir()
         if not item.name.endswith((".case.yaml", ".network.yaml", ".expect"))
     ]
-    assert sorted(others) == [".gitattributes", "networks"]
+    assert sorted(others) == [".gitattributes", "candidates", "networks"]
     for beside in FOLDER.glob("*.expect"):
         assert beside.with_name(beside.name.removesuffix(".expect")).exists(), beside.name
 

@@ -13,6 +13,7 @@ from fractions import Fraction
 from typing import TYPE_CHECKING
 
 from yieldnet.chemistry.atomic_weights import atomic_weight, is_element
+from yieldnet.foundation.errors import TextError
 from yieldnet.foundation.exact import NumberTextError, decimal_text, read_number
 
 if TYPE_CHECKING:
@@ -44,24 +45,10 @@ _UNCLEAR_CHARGE = re.compile(r"(?:[A-Z][a-z]?\d+|.*[\])}]\d+|.*[A-Z][a-z]?\d\d+)
 _CHARGE = re.compile(r"(?:\^?([+-])(\d*)|\^(\d+)([+-]))$", re.ASCII)
 
 
-class FormulaTextError(ValueError):
-    """A text that is not a usable formula.
+class FormulaTextError(TextError):
+    """A text that is not a usable formula."""
 
-    Parameters
-    ----------
-    reason : str
-        What is wrong.
-    hint : str
-        The way out.
-    code : str
-        Finding code that fits.
-    """
-
-    def __init__(self, reason: str, hint: str = "", code: str = "YN204") -> None:
-        super().__init__(reason)
-        self.reason = reason
-        self.hint = hint
-        self.code = code
+    usual_code = "YN204"
 
 
 @dataclass(frozen=True, slots=True)

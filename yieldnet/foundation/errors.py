@@ -13,7 +13,7 @@ if TYPE_CHECKING:
 
     from yieldnet.foundation.findings import Finding
 
-__all__ = ["InputError", "SolveError", "YieldnetError"]
+__all__ = ["InputError", "SolveError", "TextError", "YieldnetError"]
 
 
 class YieldnetError(Exception):
@@ -36,3 +36,25 @@ class InputError(YieldnetError, ValueError):
 
 class SolveError(YieldnetError):
     """A number was asked of an answer that has none, or no engine can solve the problem."""
+
+
+class TextError(ValueError):
+    """A text that cannot be read as what it should be; whoever reads the file makes it a finding.
+
+    Parameters
+    ----------
+    reason : str
+        What is wrong.
+    hint : str
+        The way out.
+    code : str
+        Finding code that fits; empty for the usual one of the class.
+    """
+
+    usual_code = ""
+
+    def __init__(self, reason: str, hint: str = "", code: str = "") -> None:
+        super().__init__(reason)
+        self.reason = reason
+        self.hint = hint
+        self.code = code or self.usual_code

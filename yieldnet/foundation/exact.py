@@ -11,6 +11,8 @@ from dataclasses import dataclass
 from fractions import Fraction
 from typing import TYPE_CHECKING
 
+from yieldnet.foundation.errors import TextError
+
 if TYPE_CHECKING:
     from collections.abc import Sequence
 
@@ -35,24 +37,10 @@ _NUMBER = re.compile(r"([+-]?)(\d*)(?:\.(\d*))?(?:[eE]([+-]?\d+))?", re.ASCII)
 _RATIO = re.compile(r"([+-]?\d+)/(\d+)", re.ASCII)
 
 
-class NumberTextError(ValueError):
-    """A text that is not a usable number.
+class NumberTextError(TextError):
+    """A text that is not a usable number."""
 
-    Parameters
-    ----------
-    code : str
-        Finding code that fits.
-    reason : str
-        What is wrong with the text.
-    hint : str
-        The way out.
-    """
-
-    def __init__(self, code: str, reason: str, hint: str = "") -> None:
-        super().__init__(reason)
-        self.code = code
-        self.reason = reason
-        self.hint = hint
+    usual_code = "YN201"
 
 
 @dataclass(frozen=True, slots=True)
@@ -104,14 +92,14 @@ def read_number(text: str) -> WrittenNumber:
     """
     plain = text.strip().replace("−", "-")
     if len(plain) > 4 * MAX_DIGITS:
-        raise NumberTextError("YN202", f"a number of {len(plain)} characters is too long")
+        raise NumberTextError(f"a number of {len(plain)} characters is too long", code="YN202")
     if ratio := _RATIO.fullmatch(plain):
         over, under = ratio.groups()
         if len(over) > MAX_DIGITS or len(under) > MAX_DIGITS:
-            raise NumberTextError("YN202", f"{plain!r} has more than {MAX_DIGITS} digits")
+            raise NumberTextError(f"{plain!r} has more than {MAX_DIGITS} digits", code="YN202")
         if int(under) == 0:
             raise NumberTextError(
-                "YN207", f"{plain!r} divides by zero", "Write a non-zero divisor."
+                f"{plain!r} divides by zero", "Write a non-zero divisor.", code="YN207"
             )
         return WrittenNumber(Fraction(int(over), int(under)), plain)
     found = _NUMBER.fullmatch(plain)
@@ -120,12 +108,12 @@ def read_number(text: str) -> WrittenNumber:
     sign, whole, after, power = found.groups()
     digits = (whole or "") + (after or "")
     if len(digits) > MAX_DIGITS:
-        raise NumberTextError("YN202", f"{plain!r} has more than {MAX_DIGITS} digits")
+        raise NumberTextError(f"{plain!r} has more than {MAX_DIGITS} digits", code="YN202")
     if power and (len(power) > 4 or abs(int(power)) > MAX_EXPONENT):
         raise NumberTextError(
-            "YN202",
             f"{plain!r} has a power of ten beyond {MAX_EXPONENT}",
             "Write it in a unit in which the number is near 1.",
+            code="YN202",
         )
     last = Fraction(10) ** (int(power or 0) - len(after or ""))
     value = int(digits) * last * (-1 if sign == "-" else 1)
@@ -136,19 +124,18 @@ def read_number(text: str) -> WrittenNumber:
 def _why_not(text: str) -> NumberTextError:
     if re.fullmatch(r"[+-]?\d+,\d+", text):
         return NumberTextError(
-            "YN201",
             f"{text!r} is written with a decimal comma",
             f"Write it with a point: {text.replace(',', '.')}.",
         )
     if text.casefold().lstrip("+-.") in {"nan", "inf", "infinity"}:
         return NumberTextError(
-            "YN201", f"{text!r} is not a number that can be used", "Leave the entry out instead."
+            f"{text!r} is not a number that can be used", "Leave the entry out instead."
         )
     if text.endswith("%"):
         return NumberTextError(
-            "YN201", f"{text!r} is a percentage", "Write it as a fraction of 1, such as 0.05."
+            f"{text!r} is a percentage", "Write it as a fraction of 1, such as 0.05."
         )
-    return NumberTextError("YN201", f"{text!r} is not a number")
+    return NumberTextError(f"{text!r} is not a number")
 
 
 def decimal_text(value: Fraction) -> str | None:

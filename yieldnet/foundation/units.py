@@ -9,6 +9,8 @@ from __future__ import annotations
 from dataclasses import dataclass
 from fractions import Fraction
 
+from yieldnet.foundation.errors import TextError
+
 __all__ = [
     "AMOUNT_UNITS",
     "TIME_UNITS",
@@ -32,24 +34,10 @@ _TEMPERATURE = ("degC", "K")
 _SPELLINGS = {"°C": "degC", "Cmol": "C-mol", "cmol": "C-mol", "hr": "h", "gDW": "g", "day": "d"}
 
 
-class UnitError(ValueError):
-    """A unit that is unknown, or of the wrong kind for the place where it stands.
+class UnitError(TextError):
+    """A unit that is unknown, or of the wrong kind for the place where it stands."""
 
-    Parameters
-    ----------
-    reason : str
-        What is wrong.
-    hint : str
-        The way out.
-    code : str
-        Finding code that fits.
-    """
-
-    def __init__(self, reason: str, hint: str = "", code: str = "YN203") -> None:
-        super().__init__(reason)
-        self.reason = reason
-        self.hint = hint
-        self.code = code
+    usual_code = "YN203"
 
 
 @dataclass(frozen=True, slots=True)

@@ -7,7 +7,7 @@ from fractions import Fraction
 from pathlib import Path
 from typing import TYPE_CHECKING
 
-from yieldnet.chemistry.formula import Formula, FormulaTextError, read_formula
+from yieldnet.chemistry.formula import Formula
 from yieldnet.chemistry.library import find_biomass, find_compound, library_names
 from yieldnet.foundation.exact import WrittenNumber
 from yieldnet.foundation.findings import Findings, Severity, TooManyFindings, near
@@ -17,6 +17,7 @@ from yieldnet.model.network import Compound, Direction
 from yieldnet.reading.case_statements import StatementReader
 from yieldnet.reading.equations import read_equation
 from yieldnet.reading.fields import Fields, entries, number, text, text_list, unsplit_pairs
+from yieldnet.reading.fields import formula as formula_of
 from yieldnet.reading.names import NameBook
 from yieldnet.reading.network_file import load_network
 from yieldnet.reading.nodes import Kind, Node, compose
@@ -259,7 +260,9 @@ class _Reader:
             else:
                 value_node = value
             organism = find_biomass(value_node.text) if value_node else None
-            formula = self._formula(value_node, label) if value_node else None
+            formula = organism.formula if organism else None
+            if value_node is not None and organism is None:
+                formula = formula_of(value_node, label, self.findings)
             if ash is None and organism is not None and organism.ash is not None:
                 ash = WrittenNumber(organism.ash, str(organism.ash))
             self.book.define(key.text, None, key.span)
@@ -281,17 +284,6 @@ class _Reader:
             self.book.own[key.text] = Compound(
                 name=key.text, formula=formula, ash=ash.value if ash else Fraction(0), span=key.span
             )
-
-    def _formula(self, node: Node, label: str) -> Formula | None:
-        written = text(node, label, self.findings)
-        try:
-            biomass = find_biomass(written) if written is not None else None
-            if biomass is not None:
-                return biomass.formula
-            return read_formula(written) if written is not None else None
-        except FormulaTextError as error:
-            self.findings.add(error.code, f"{label}: {error.reason}", node.span, hint=error.hint)
-            return None
 
     def _compound(self, name: str) -> Compound:
         found = self.book.own.get(name) or self.book.taken.get(name)

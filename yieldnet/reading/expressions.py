@@ -5,6 +5,7 @@ from __future__ import annotations
 import re
 from typing import TYPE_CHECKING
 
+from yieldnet.foundation.errors import TextError
 from yieldnet.foundation.exact import NumberTextError, read_number
 from yieldnet.model.expression import Expression, Negation, Operation, ParameterName
 
@@ -21,24 +22,10 @@ MAX_LENGTH = 300
 _TOKEN = re.compile(r"\s*(?:(\d+\.?\d*(?:[eE][+-]?\d+)?|\.\d+)|([A-Za-z_]\w*)|([-+*/()−]))")
 
 
-class ExpressionTextError(ValueError):
-    """A text that is not a parameter expression.
+class ExpressionTextError(TextError):
+    """A text that is not a parameter expression."""
 
-    Parameters
-    ----------
-    reason : str
-        What is wrong.
-    hint : str
-        The way out.
-    code : str
-        Finding code that fits.
-    """
-
-    def __init__(self, reason: str, hint: str = "", code: str = "YN206") -> None:
-        super().__init__(reason)
-        self.reason = reason
-        self.hint = hint
-        self.code = code
+    usual_code = "YN206"
 
 
 def read_expression(text: str) -> Expression:

@@ -5,6 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
+from yieldnet.chemistry.formula import FormulaTextError, read_formula
 from yieldnet.foundation.exact import NumberTextError, WrittenNumber, read_number
 from yieldnet.foundation.findings import Findings, near
 from yieldnet.reading.nodes import Kind, Node
@@ -12,9 +13,19 @@ from yieldnet.reading.nodes import Kind, Node
 if TYPE_CHECKING:
     from collections.abc import Sequence
 
+    from yieldnet.chemistry.formula import Formula
     from yieldnet.foundation.findings import SourceSpan
 
-__all__ = ["MAX_COMMAS", "Fields", "entries", "number", "text", "text_list", "unsplit_pairs"]
+__all__ = [
+    "MAX_COMMAS",
+    "Fields",
+    "entries",
+    "formula",
+    "number",
+    "text",
+    "text_list",
+    "unsplit_pairs",
+]
 
 MAX_COMMAS = 4
 """Most commas in a compound name that a split is looked for: 1,2,3,4-tetra... [-]."""
@@ -56,6 +67,18 @@ def number(node: Node, label: str, findings: Findings) -> WrittenNumber | None:
     try:
         return read_number(node.text)
     except NumberTextError as error:
+        findings.add(error.code, f"{label}: {error.reason}", node.span, hint=error.hint)
+        return None
+
+
+def formula(node: Node, label: str, findings: Findings) -> Formula | None:
+    """Formula of a node, or ``None`` with a finding."""
+    written = text(node, label, findings)
+    if written is None:
+        return None
+    try:
+        return read_formula(written)
+    except FormulaTextError as error:
         findings.add(error.code, f"{label}: {error.reason}", node.span, hint=error.hint)
         return None
 

@@ -6,7 +6,7 @@ from dataclasses import dataclass, field
 from fractions import Fraction
 from typing import TYPE_CHECKING
 
-from yieldnet.chemistry.formula import Formula, FormulaTextError, read_formula
+from yieldnet.chemistry.formula import Formula
 from yieldnet.chemistry.library import (
     biomass_entries,
     find_biomass,
@@ -33,6 +33,7 @@ from yieldnet.model.network import (
 )
 from yieldnet.reading.equations import read_equation
 from yieldnet.reading.fields import Fields, entries, number, text, text_list, unsplit_pairs
+from yieldnet.reading.fields import formula as formula_of
 from yieldnet.reading.names import NameBook
 from yieldnet.reading.nodes import Kind, Node, compose
 from yieldnet.reading.quantities import read_quantity
@@ -237,16 +238,6 @@ class _Reader:
                     )
                 )
 
-    def _formula(self, node: Node, label: str) -> Formula | None:
-        written = text(node, label, self.findings)
-        if written is None:
-            return None
-        try:
-            return read_formula(written)
-        except FormulaTextError as error:
-            self.findings.add(error.code, f"{label}: {error.reason}", node.span, hint=error.hint)
-            return None
-
     def _carriers(self, node: Node | None) -> None:
         for key, value in entries(node, "'carriers'", self.findings) if node else ():
             label = f"carrier {key.text!r}"
@@ -272,7 +263,7 @@ class _Reader:
                 )
                 continue
             written = fields.get("formula")
-            formula = Formula(()) if written is None else self._formula(written, label)
+            formula = Formula(()) if written is None else formula_of(written, label, self.findings)
             if kind.text == CarrierKind.ENERGY and formula and formula.elements:
                 self.findings.add(
                     "YN415",
@@ -338,7 +329,7 @@ class _Reader:
                     self.book.define(key.text, None, key.span)
                     continue
                 place = inner
-            formula = self._formula(place, label)
+            formula = formula_of(place, label, self.findings)
             if formula is not None and charge is not None:
                 formula = self._charged(formula, charge, label, place.span)
             self._against_library(key, formula)
@@ -404,7 +395,7 @@ class _Reader:
         if value is not None and value.kind is Kind.MAPPING:
             fields = Fields(value, "the biomass", ("formula", "ash", "about"), self.findings)
             written = fields.need("formula", "Give its ash-free formula, such as CH1.8O0.5N0.2.")
-            formula = self._formula(written, "the biomass") if written else None
+            formula = formula_of(written, "the biomass", self.findings) if written else None
             ash = fields.number("ash")
             if ash is not None and not 0 <= ash.value < 1:
                 self.findings.add(
