@@ -135,6 +135,14 @@ def _ends(
     for k in wanted:
         for name, amount in moves[k].items():
             entries[problem.row(name)].append((place[k], -amount))
+    # A bound that the point does not touch stays where it is, in a row of its own.
+    moved = dict.fromkeys(name for k in wanted for name in moves[k])
+    kept = {
+        name: _untouched(problem.rows[place].bounds, best.activity(place))
+        for name in moved
+        for place in (problem.row(name),)
+    }
+    kept_rows = [name for name, bounds in kept.items() if bounds != FREE]
     line = [(problem.column(name), factor) for name, factor in best.objective if factor]
     line += [(place[k], -(values[k] or _ZERO)) for k in wanted]
     shut = Bounds(_ZERO, _ZERO)
@@ -144,11 +152,24 @@ def _ends(
             *problem.columns,
             *(Column(name=f"step {k}", bounds=shut) for k in wanted),
         ),
-        rows=(*problem.rows, Row(name="objective on its line", layer="", bounds=level)),
-        matrix=Matrix(tuple(tuple(row) for row in (*entries, line)), size + len(wanted)),
+        rows=(
+            *problem.rows,
+            Row(name="objective on its line", layer="", bounds=level),
+            *(Row(name=f"kept end of {name}", layer="", bounds=kept[name]) for name in kept_rows),
+        ),
+        matrix=Matrix(
+            tuple(
+                tuple(row)
+                for row in (
+                    *entries,
+                    line,
+                    *(problem.matrix.rows[problem.row(name)] for name in kept_rows),
+                )
+            ),
+            size + len(wanted),
+        ),
     )
     for k in wanted:
-        # A bound that the point does not touch stays where it is: only touched bounds move.
         still = {
             name: _split(problem.rows[problem.row(name)].bounds, best.activity(problem.row(name)))
             for name in moves[k]
@@ -160,10 +181,16 @@ def _ends(
 
 
 def _split(bounds: Bounds, value: Fraction) -> Bounds:
-    """The bound that moves; the other one of a range would move with it, so it is left out."""
-    if bounds.fixed or bounds == FREE:
-        return bounds
+    """The bounds of a row that the point touches, which move."""
     return Bounds(
         bounds.low if bounds.low == value else None,
         bounds.high if bounds.high == value else None,
+    )
+
+
+def _untouched(bounds: Bounds, value: Fraction) -> Bounds:
+    """The bounds of a row that the point does not touch, which stay."""
+    return Bounds(
+        None if bounds.low == value else bounds.low,
+        None if bounds.high == value else bounds.high,
     )

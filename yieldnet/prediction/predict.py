@@ -295,7 +295,8 @@ def _aim_percent(layers: Layers, ladder: tuple[LadderRung, ...]) -> Fraction | N
     if layers.network is None or not ladder:
         return None
     last, first = values[layers.rungs[-1]], values[layers.last_over_the_cell]
-    return None if last is None or not first else last / first
+    # Beyond zero a quotient says nothing: what is taken up is no share of what is given off.
+    return None if last is None or last < 0 or not first or first < 0 else last / first
 
 
 def _aim_value(
