@@ -12,8 +12,8 @@ from yieldnet.optimum.slopes import slopes
 ONE = Fraction(1)
 
 
-def test_the_other_end_of_a_range_stays_where_it_is() -> None:
-    # Most x with x in 0...10 and a row 1 <= x <= 3: the high end can come down by 2, not by 3.
+def test_a_range_moves_as_a_whole() -> None:
+    # Most x with x in 0...10 and a row 1 <= x <= 3: moved down by 3, the range is -2...0.
     builder = ProblemBuilder()
     builder.add_column("x", Bounds(Fraction(0), Fraction(10)))
     builder.add_row("range", "demands", Bounds(ONE, Fraction(3)), {"x": ONE})
@@ -21,7 +21,7 @@ def test_the_other_end_of_a_range_stays_where_it_is() -> None:
     best = optimiser.optimise(builder.build(), {"x": ONE})
     more, less = slopes(optimiser, best, [{"range": ONE}, {"range": -ONE}])
     assert (more.value, more.until) == (1, 7)
-    assert (less.value, less.until) == (-1, 2)
+    assert (less.value, less.until) == (-1, 3)
 
 
 def test_a_corner_has_two_slopes() -> None:

@@ -17,7 +17,7 @@ from dataclasses import dataclass
 from fractions import Fraction
 from typing import TYPE_CHECKING
 
-from yieldnet.optimum.problem import FREE, Bounds, Column, Matrix, Problem, Row
+from yieldnet.optimum.problem import Bounds, Column, Matrix, Problem, Row
 from yieldnet.optimum.proof import Status
 
 if TYPE_CHECKING:
@@ -59,7 +59,7 @@ def slopes(
     best : Answer
         Proven optimum.
     moves : sequence of mapping of str to Fraction
-        For each move, how much the touched bound of each row shifts per unit.
+        For each move, how far both bounds of each row shift per unit: a statement moves whole.
 
     Returns
     -------
@@ -135,14 +135,6 @@ def _ends(
     for k in wanted:
         for name, amount in moves[k].items():
             entries[problem.row(name)].append((place[k], -amount))
-    # A bound that the point does not touch stays where it is, in a row of its own.
-    moved = dict.fromkeys(name for k in wanted for name in moves[k])
-    kept = {
-        name: _untouched(problem.rows[place].bounds, best.activity(place))
-        for name in moved
-        for place in (problem.row(name),)
-    }
-    kept_rows = [name for name, bounds in kept.items() if bounds != FREE]
     line = [(problem.column(name), factor) for name, factor in best.objective if factor]
     line += [(place[k], -(values[k] or _ZERO)) for k in wanted]
     shut = Bounds(_ZERO, _ZERO)
@@ -152,45 +144,11 @@ def _ends(
             *problem.columns,
             *(Column(name=f"step {k}", bounds=shut) for k in wanted),
         ),
-        rows=(
-            *problem.rows,
-            Row(name="objective on its line", layer="", bounds=level),
-            *(Row(name=f"kept end of {name}", layer="", bounds=kept[name]) for name in kept_rows),
-        ),
-        matrix=Matrix(
-            tuple(
-                tuple(row)
-                for row in (
-                    *entries,
-                    line,
-                    *(problem.matrix.rows[problem.row(name)] for name in kept_rows),
-                )
-            ),
-            size + len(wanted),
-        ),
+        rows=(*problem.rows, Row(name="objective on its line", layer="", bounds=level)),
+        matrix=Matrix(tuple(tuple(row) for row in (*entries, line)), size + len(wanted)),
     )
     for k in wanted:
-        still = {
-            name: _split(problem.rows[problem.row(name)].bounds, best.activity(problem.row(name)))
-            for name in moves[k]
-        }
-        opened = extended.with_columns({f"step {k}": Bounds(_ZERO, None)}).with_rows(still)
+        opened = extended.with_columns({f"step {k}": Bounds(_ZERO, None)})
         answer = optimiser.optimise(opened, {f"step {k}": _ONE})
         ends[k] = answer.value if answer.status is Status.OPTIMAL else None
     return ends
-
-
-def _split(bounds: Bounds, value: Fraction) -> Bounds:
-    """The bounds of a row that the point touches, which move."""
-    return Bounds(
-        bounds.low if bounds.low == value else None,
-        bounds.high if bounds.high == value else None,
-    )
-
-
-def _untouched(bounds: Bounds, value: Fraction) -> Bounds:
-    """The bounds of a row that the point does not touch, which stay."""
-    return Bounds(
-        None if bounds.low == value else bounds.low,
-        None if bounds.high == value else bounds.high,
-    )
