@@ -12,6 +12,7 @@ from typing import TYPE_CHECKING
 if TYPE_CHECKING:
     from yieldnet.foundation.errors import InputError, SolveError, YieldnetError
     from yieldnet.verbs import (
+        additions,
         audit,
         balance,
         explain,
@@ -21,12 +22,14 @@ if TYPE_CHECKING:
         read_network,
         schema,
         screen,
+        tradeoff,
     )
 
 __all__ = [
     "InputError",
     "SolveError",
     "YieldnetError",
+    "additions",
     "audit",
     "balance",
     "explain",
@@ -36,6 +39,7 @@ __all__ = [
     "read_network",
     "schema",
     "screen",
+    "tradeoff",
 ]
 __version__ = "0.1.0"
 

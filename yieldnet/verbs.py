@@ -14,12 +14,15 @@ if TYPE_CHECKING:
     from yieldnet.model.case import Case
     from yieldnet.model.network import Network
     from yieldnet.prediction.result import Prediction
+    from yieldnet.studies.addition_result import AdditionResult
     from yieldnet.studies.knockout import KnockOutResult
     from yieldnet.studies.screen import ScreenResult
+    from yieldnet.studies.tradeoff import Tradeoff
 
     Path = str | os.PathLike[str]
 
 __all__ = [
+    "additions",
     "audit",
     "balance",
     "explain",
@@ -29,6 +32,7 @@ __all__ = [
     "read_network",
     "schema",
     "screen",
+    "tradeoff",
 ]
 
 
@@ -353,6 +357,8 @@ def screen(
     >>> result.entries[0].names
     ('alcohol dehydrogenase', 'lactate dehydrogenase')
     """
+    import time
+
     from yieldnet.studies.screen import Score, screen_case
 
     return screen_case(
@@ -364,6 +370,116 @@ def screen(
         confirmed=yes,
         engine=engine,
         tick=tick,
+        clock=time.perf_counter,
+    )
+
+
+def tradeoff(
+    cases: Case | Path | Sequence[Case | Path],
+    *,
+    x: str = "",
+    y: str = "",
+    over: str = "",
+    engine: str = "glpk",
+) -> Tradeoff:
+    """All that two coefficients can be together, as an exact polygon for each case.
+
+    Parameters
+    ----------
+    cases : Case or path, or sequence of them
+        One question or several of the same basis, or the paths of their files.
+    x : str
+        Coefficient along x; biomass if empty.
+    y : str
+        Coefficient along y; the aim of the first case if empty.
+    over : {"", "growth-rate", "oxygen"}
+        Axis with a name of its own, instead of ``x``.
+    engine : {"glpk", "optlang"}
+        Solver whose answers are proven in fractions.
+
+    Returns
+    -------
+    Tradeoff
+        Corners, edges and what changes along them [mol/mol basis], growth rates [1/h].
+
+    Raises
+    ------
+    InputError
+        If the files must be refused, or a case cannot be shown on these axes.
+    ValueError
+        If there is no case, or ``over`` is not known or stands beside ``x``.
+
+    Examples
+    --------
+    >>> (region,) = tradeoff("examples/succinate-from-xylose/case.yaml").regions
+    >>> [(round(float(at.x), 3), round(float(at.y), 3)) for at in region.corners]
+    [(0.0, 0.0), (0.942, 0.0), (0.942, 0.496), (0.111, 1.028), (0.0, 1.041)]
+    """
+    from yieldnet.model.case import Case
+    from yieldnet.studies.tradeoff import trade_off
+
+    several = [cases] if isinstance(cases, Case | str | os.PathLike) else cases
+    return trade_off([_as_case(case) for case in several], x, y, over, engine)
+
+
+def additions(
+    case: Case | Path,
+    *,
+    candidates: Network | Path | None = None,
+    pairs: bool = False,
+    with_deletions: bool = False,
+    top: int = 5,
+    engine: str = "glpk",
+) -> AdditionResult:
+    """What added reactions would bring to the aim of a case.
+
+    Parameters
+    ----------
+    case : Case or path
+        The case, or the path of its file; it needs a network and a product as its aim.
+    candidates : Network or path, optional
+        Network of candidate reactions, the path of its file, or the name of a shipped network;
+        the candidate file that ships with the program if left out.
+    pairs : bool
+        Whether two candidates are tried together as well.
+    with_deletions : bool
+        Whether every knock-out is tried on top of the best additions.
+    top : int
+        How many of the best additions get knock-outs [-].
+    engine : {"glpk", "optlang"}
+        Solver whose answers are proven in fractions.
+
+    Returns
+    -------
+    AdditionResult
+        Additions by gain, each with the rungs it relieves [mol/mol basis].
+
+    Raises
+    ------
+    InputError
+        If the files must be refused, or the case has no best value to improve; carries all
+        findings.
+
+    Examples
+    --------
+    >>> result = additions("examples/lysine/case.yaml")
+    >>> result.singles[0].names, result.before, result.singles[0].value
+    (('transhydrogenase without cost',), Fraction(30, 37), Fraction(6, 7))
+    """
+    from yieldnet.model.network import Network
+    from yieldnet.reading.shipped import models_folder
+    from yieldnet.studies.additions import add_candidates
+
+    if candidates is None:
+        candidates = models_folder() / "candidates" / "central-metabolism.yaml"
+    written = candidates if isinstance(candidates, Network) else read_network(candidates)
+    return add_candidates(
+        _as_case(case),
+        written,
+        pairs=pairs,
+        with_deletions=with_deletions,
+        top=top,
+        engine=engine,
     )
 
 

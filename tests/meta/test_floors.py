@@ -161,7 +161,8 @@ def test_only_reading_opens_the_files_of_a_user(program: dict[Path, ast.Module])
 def test_nothing_below_the_entry_points_reads_the_clock_or_the_environment(
     program: dict[Path, ast.Module],
 ) -> None:
-    assert _importers(program, "time", "datetime") <= {"cli"}
+    # The public functions are entry points as well: one hands a clock to a long study.
+    assert _importers(program, "time", "datetime") <= {"cli", "verbs.py"}
     reading_it = {
         _home(path)
         for path, tree in program.items()

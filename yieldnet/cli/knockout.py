@@ -17,7 +17,7 @@ __all__ = ["command"]
 def command(case: str, names: tuple[str, ...], engine: str, as_json: bool) -> None:
     """CASE before and after switching off NAMES, reactions or groups of its network.
 
-    Example: yieldnet knockout examples/succinate-from-xylose/case.yaml respiration
+    Example: yieldnet knockout examples/lysine/case.yaml 'malic enzyme'
     """
     from yieldnet.foundation.errors import YieldnetError
     from yieldnet.verbs import knockout

@@ -16,6 +16,8 @@ _VERBS = {
     "audit": "What is wrong or doubtful in a network.",
     "knockout": "One idea, before and after.",
     "screen": "All knock-outs to a depth, ranked.",
+    "additions": "What added reactions would bring.",
+    "tradeoff": "What two coefficients can be together, as a polygon.",
     "compounds": "The compound and biomass library.",
     "networks": "The networks that ship with yieldnet.",
     "explain": "What a word or a finding code means.",

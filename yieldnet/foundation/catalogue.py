@@ -283,8 +283,8 @@ _ENTRIES = (
         "Growth rate is uptake times biomass yield; without an uptake a yield has no growth rate.",
         "Add 'substrate uptake' to the conditions of the case, or take biomass as the axis."),
     CatalogueEntry("YN710", "Cases that cannot be laid over each other",
-        "Yields per mol of different substrates look comparable in one picture and are not.",
-        "Compare cases that have the same basis."),
+        "Yields per mol of other substrates, or counted the other way, look comparable and are not.",
+        "Compare cases with the same basis, and with the compounds of the axes on the same side."),
 )
 
 CATALOGUE: Mapping[str, CatalogueEntry] = MappingProxyType(

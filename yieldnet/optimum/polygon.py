@@ -96,6 +96,10 @@ class Polygon:
         return tuple(found)
 
 
+class _Empty(Exception):
+    """There is no feasible point."""
+
+
 class _Runaway(Exception):
     """There is no bound in a direction that was tried."""
 
@@ -119,6 +123,8 @@ class _Plane:
     def corner(self, way: Point, then: Point | None) -> Point:
         """A point furthest along a direction and, among those, along another one."""
         answer = self.optimiser.optimise(self.problem, self._objective(way))
+        if answer.status is Status.INFEASIBLE:
+            raise _Empty
         if answer.status is Status.OPTIMAL and then is not None:
             answer = self.optimiser.optimise(answer.optimal_face(), self._objective(then))
         if answer.status is not Status.OPTIMAL:
@@ -146,11 +152,11 @@ def project(optimiser: Optimiser, problem: Problem, x: Axis, y: Axis) -> Polygon
     Polygon or None
         Every corner, exact.
     """
-    if optimiser.optimise(problem, {}).status is Status.INFEASIBLE:
-        return None
     plane = _Plane(optimiser, problem, x, y)
     try:
         corners = _rim(plane)
+    except _Empty:
+        return None
     except _Runaway:
         return _open_polygon(plane)
     return Polygon(
@@ -248,9 +254,7 @@ def _directions(plane: _Plane) -> Problem:
     def ends(bounds: Bounds) -> Bounds:
         if bounds.low is None and bounds.high is None:
             return FREE
-        return Bounds(
-            None if bounds.low is None else _ZERO, None if bounds.high is None else _ZERO
-        )
+        return Bounds(None if bounds.low is None else _ZERO, None if bounds.high is None else _ZERO)
 
     problem = plane.problem
     cone = replace(

@@ -5,7 +5,6 @@ The whole screen runs in floats on one warm problem; the entries at the top are 
 
 from __future__ import annotations
 
-import time
 from dataclasses import dataclass
 from enum import StrEnum
 from math import comb
@@ -193,6 +192,7 @@ def screen_case(
     confirmed: bool = False,
     engine: str = "glpk",
     tick: Callable[[int, int], None] | None = None,
+    clock: Callable[[], float] | None = None,
 ) -> ScreenResult:
     """All knock-outs of a case to a depth, ranked.
 
@@ -215,6 +215,8 @@ def screen_case(
         Engine whose bases prove the entries at the top.
     tick : callable, optional
         Called with the sets done and the sets in all.
+    clock : callable, optional
+        Seconds that pass, to estimate the time of a long screen; none is refused without it [s].
 
     Returns
     -------
@@ -251,7 +253,8 @@ def screen_case(
         evaluate=_Evaluator(setting, fast, score, least),
     )
     total = sum(comb(len(things), size) for size in range(depth + 1))
-    _estimate(run, len(things), depth, total, confirmed, findings, case)
+    if clock is not None and depth > 1 and not confirmed:
+        _estimate(run, len(things), depth, total, clock, findings, case)
     done: list[Deletion] = []
     interrupted = False
     residual = 0.0
@@ -315,17 +318,15 @@ def _estimate(
     count: int,
     depth: int,
     total: int,
-    confirmed: bool,
+    clock: Callable[[], float],
     findings: Findings,
     case: Case,
 ) -> None:
-    """Refuse a screen that would take too long, unless it is confirmed."""
-    if depth < 2 or confirmed:
-        return
-    start = time.perf_counter()
+    """Refuse a screen that would take too long, judged by the time of its single knock-outs."""
+    start = clock()
     for _ in delete_all(run, 1):
         pass
-    seconds = (time.perf_counter() - start) / max(1, count) * total
+    seconds = (clock() - start) / max(1, count) * total
     if seconds > MAX_SECONDS:
         findings.add(
             "YN706",
