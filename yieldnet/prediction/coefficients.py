@@ -174,31 +174,46 @@ def freedom_of(
         One a rung.
     """
     measured = layers.statements.measured_compounds()
-    found = []
-    for rung in layers.rungs:
+    found: list[Freedom] = []
+    below: int | None = None
+    for rung in reversed(layers.rungs):
         known = () if rung == "elements" else measured
+        free = equations[rung].free(known)
         in_fact = None
         if point is not None:
-            problem = layers.problem(rung)
-            if rung != "elements":
-                problem = with_point(problem, layers.statements, point)
-            names = equations[rung].names
-            hull = affine_hull(
-                optimiser,
-                problem,
-                [yield_column(name) for name in names],
-                equations[rung].with_known(known),
+            # Points of a lower rung are points of this one: what they can do, this one can.
+            in_fact = (
+                free
+                if below == free
+                else _free_in_fact(optimiser, layers, rung, equations[rung], known, point)
             )
-            in_fact = None if hull is None else hull.dimension
+            below = in_fact
         found.append(
             Freedom(
                 layer=rung,
                 unknowns=layers.case.unknowns(),
-                free=equations[rung].free(known),
+                free=free,
                 free_in_fact=in_fact,
             )
         )
-    return tuple(found)
+    return tuple(reversed(found))
+
+
+def _free_in_fact(
+    optimiser: Optimiser,
+    layers: Layers,
+    rung: str,
+    equations: CoefficientEquations,
+    known: tuple[str, ...],
+    point: Mapping[str, Fraction],
+) -> int | None:
+    """Dimension of the coefficients that a rung leaves, signs counted too."""
+    problem = layers.problem(rung)
+    if rung != "elements":
+        problem = with_point(problem, layers.statements, point)
+    columns = [yield_column(name) for name in equations.names]
+    hull = affine_hull(optimiser, problem, columns, equations.with_known(known))
+    return None if hull is None else hull.dimension
 
 
 def movements(

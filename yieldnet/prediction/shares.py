@@ -89,6 +89,7 @@ class _Coalitions:
         self.players = layers.rungs[1:]
         self.base, self.freed = _with_free_layers(layers)
         self.found: dict[frozenset[str], Answer] = {}
+        self.values: dict[frozenset[str], Fraction | None] = {}
 
     def problem(self, present: frozenset[str]) -> Problem:
         """Problem in which only some layers are present."""
@@ -113,24 +114,30 @@ class _Coalitions:
 
     def value(self, present: frozenset[str]) -> Fraction | None:
         """Best value for a set of layers; ``None`` if there is none."""
-        known = self.found.get(present)
-        if known is None:
-            problem = self.problem(present)
-            for layer in self.players:
-                # A layer less may have the same best point; its duals then prove it here too.
-                less = self.found.get(present - {layer})
-                if (
-                    layer in present
-                    and less is not None
-                    and less.status is Status.OPTIMAL
-                    and less.stays_best(problem)
-                ):
-                    known = less
-                    break
-            else:
-                known = self.objective.best(self.optimiser, problem)
-            self.found[present] = known
-        return known.value if known.status is Status.OPTIMAL else None
+        if present not in self.values:
+            self.values[present] = self._between(present) or self._solved(present)
+        return self.values[present]
+
+    def _between(self, present: frozenset[str]) -> Fraction | None:
+        """Value that a set of fewer and a set of more layers share: then it is this one's, too."""
+        fewer = {value for known, value in self.values.items() if known < present}
+        more = {value for known, value in self.values.items() if known > present}
+        shared = (fewer & more) - {None}
+        return shared.pop() if shared else None
+
+    def _solved(self, present: frozenset[str]) -> Fraction | None:
+        problem = self.problem(present)
+        answer: Answer | None = None
+        for layer in present:
+            # A layer less may have the same best point; its duals then prove it here too.
+            less = self.found.get(present - {layer})
+            if less is not None and less.status is Status.OPTIMAL and less.stays_best(problem):
+                answer = less
+                break
+        else:
+            answer = self.objective.best(self.optimiser, problem)
+        self.found[present] = answer
+        return answer.value if answer.status is Status.OPTIMAL else None
 
 
 def _with_free_layers(layers: Layers) -> tuple[Problem, dict[str, tuple[str, ...]]]:
@@ -229,7 +236,8 @@ def find_shares(
     size = len(players)
     sign = 1 if objective.maximise else -1
     values: dict[frozenset[str], Fraction] = {}
-    for count in range(size + 1):
+    # From both ends to the middle: what lies between two equal values is settled without a solve.
+    for count in sorted(range(size + 1), key=lambda count: min(count, size - count)):
         for members in combinations(players, count):
             value = game.value(frozenset(members))
             if value is None:
