@@ -9,12 +9,14 @@ from yieldnet.foundation.errors import InputError
 
 if TYPE_CHECKING:
     from collections.abc import Callable, Sequence
+    from fractions import Fraction
 
     from yieldnet.audit.audit import AuditResult
     from yieldnet.model.case import Case
     from yieldnet.model.network import Network
     from yieldnet.prediction.result import Prediction
     from yieldnet.studies.addition_result import AdditionResult
+    from yieldnet.studies.coupling import CouplingDesign
     from yieldnet.studies.knockout import KnockOutResult
     from yieldnet.studies.screen import ScreenResult
     from yieldnet.studies.tradeoff import Tradeoff
@@ -25,6 +27,7 @@ __all__ = [
     "additions",
     "audit",
     "balance",
+    "couple",
     "explain",
     "knockout",
     "predict",
@@ -479,6 +482,64 @@ def additions(
         pairs=pairs,
         with_deletions=with_deletions,
         top=top,
+        engine=engine,
+    )
+
+
+def couple(
+    case: Case | Path,
+    *,
+    least_yield: str | Fraction,
+    growth_share: float = 0.1,
+    depth: int = 3,
+    alternatives: int = 10,
+    groups: bool = False,
+    engine: str = "glpk",
+) -> CouplingDesign:
+    """Smallest knock-out sets that force product whenever the cell grows.
+
+    Parameters
+    ----------
+    case : Case or path
+        The question with growth and a product as its aim, or the path of its file.
+    least_yield : str or Fraction
+        Product to force, in mol/mol basis or as a text with a unit [mol/mol].
+    growth_share : float
+        Growth from which on it is forced, as a share of the most [-].
+    depth : int
+        Largest set to look for [-].
+    alternatives : int
+        Most sets of one size [-].
+    groups : bool
+        Whether groups are knocked out as wholes.
+    engine : {"glpk", "optlang"}
+        Solver whose answers are proven in fractions.
+
+    Returns
+    -------
+    CouplingDesign
+        Sets with what they force, exact [mol/mol basis].
+
+    Raises
+    ------
+    InputError
+        If the case cannot be studied, or the yield cannot be read.
+
+    Examples
+    --------
+    >>> design = couple("examples/succinate-from-xylose/case.yaml", least_yield="0.4")
+    >>> design.sets[0].members
+    ('alcohol dehydrogenase', 'lactate dehydrogenase')
+    """
+    from yieldnet.studies.design import design_case
+
+    return design_case(
+        _as_case(case),
+        least_yield=least_yield,
+        growth_share=growth_share,
+        depth=depth,
+        alternatives=alternatives,
+        groups=groups,
         engine=engine,
     )
 

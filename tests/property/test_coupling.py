@@ -11,9 +11,10 @@ from typing import TYPE_CHECKING
 import pytest
 
 from tests.property.cases import Wanted, random_case
-from yieldnet.foundation.errors import InputError
+from yieldnet.foundation.errors import InputError, SolveError
 from yieldnet.model.case import Aim, AimDirection
 from yieldnet.model.network import BIOMASS
+from yieldnet.optimum.fast import FastProblem
 from yieldnet.optimum.hitting_sets import HittingSets
 from yieldnet.optimum.problem import Bounds
 from yieldnet.optimum.proof import Status
@@ -21,7 +22,11 @@ from yieldnet.studies.coupling import CoupledSet, CouplingDesign, DesignStatus, 
 from yieldnet.studies.setting import Setting, set_up
 
 if TYPE_CHECKING:
-    from collections.abc import Iterator
+    from collections.abc import Callable, Iterator
+    from pathlib import Path
+
+    from yieldnet.foundation.findings import Findings
+    from yieldnet.model.case import Case
 
 NUMBER = 24
 """Random networks with growth and a product that can be made [-]."""
@@ -161,6 +166,85 @@ def test_with_few_alternatives_no_larger_set_holds_a_smaller(place: int) -> None
         assert design.cut_short == tuple(more)
 
 
+def _check(setting: Setting, growth: Fraction, brute: Brute) -> None:
+    for level in brute.values():
+        design = couple(setting, level, growth, DEPTH, ALL)
+        assert _forced(design) == brute.irreducible(level)
+    beyond = couple(setting, brute.values()[-1] + 1, growth, DEPTH, ALL)
+    assert beyond.best is not None
+    assert beyond.best.forced == brute.values()[-1]
+
+
+def test_floats_that_fail_cost_requirements_and_no_set(monkeypatch: pytest.MonkeyPatch) -> None:
+    def fails(problem: FastProblem, dual: bool = False) -> None:
+        raise SolveError("a test says so")
+
+    monkeypatch.setattr(FastProblem, "solve", fails)
+    for subject in subjects()[:6]:
+        _check(*subject)
+
+
+def test_floats_that_are_wrong_cost_requirements_and_no_set(
+    monkeypatch: pytest.MonkeyPatch,
+) -> None:
+    # Every way of growing seems to make too little.
+    monkeypatch.setattr(FastProblem, "value", property(lambda problem: -1e9))
+    for subject in subjects()[:6]:
+        _check(*subject)
+
+
+BURNT = """
+network: Lactate made or burnt
+carriers: {NADH: {kind: redox, formula: H2}, ATP: {kind: energy}}
+crossing:
+  in: [glucose, oxygen]
+  out: [biomass]
+  either: [lactate, carbon dioxide, water]
+reactions:
+  glycolysis: glucose -> 2 pyruvate + 2 NADH + 2 ATP
+  lactate dehydrogenase: pyruvate + NADH <-> lactate
+  pyruvate oxidation: pyruvate + 5/2 oxygen -> 3 carbon dioxide + 2 water
+  NADH oxidation: NADH + 1/2 oxygen -> water
+growth:
+  biomass: {formula: CH2O}
+  equation: 1/6 glucose + 1/6 ATP -> biomass
+"""
+
+
+def test_a_product_that_can_be_taken_up_without_end(
+    tmp_path: Path, case_of: Callable[[str], tuple[Case | None, Findings]]
+) -> None:
+    (tmp_path / "network.yaml").write_text(BURNT, "utf-8")
+    case, findings = case_of(
+        "case: Burnt\nnetwork: network.yaml\nequation: glucose + ? oxygen -> ? biomass\n"
+        "either side: [lactate, carbon dioxide, water]\naim: most lactate\n"
+    )
+    assert case is not None, findings.items
+    setting, growth = set_up(case), Fraction(1, 2)
+    brute = Brute(setting, growth)
+    assert brute.forced[frozenset()] is None
+    assert len(brute.values()) > 1
+    _check(setting, growth, brute)
+    # Where the level is zero, no lactate need be made, only none taken up.
+    assert brute.irreducible(Fraction(0))[frozenset({"lactate dehydrogenase"})] == 0
+    # Nothing that may be knocked out sets a bound.
+    design = couple(setting, Fraction(0), growth, things=["glycolysis"])
+    assert (design.status, design.best) == (DesignStatus.BEYOND_REACH, None)
+
+
+def test_without_biomass_there_is_nothing_to_couple_to(
+    tmp_path: Path, case_of: Callable[[str], tuple[Case | None, Findings]]
+) -> None:
+    (tmp_path / "network.yaml").write_text(BURNT, "utf-8")
+    case, _ = case_of(
+        "case: Burnt\nnetwork: network.yaml\nequation: glucose + ? oxygen -> ? lactate\n"
+        "either side: [carbon dioxide, water]\naim: most lactate\n"
+    )
+    assert case is not None
+    with pytest.raises(SolveError, match="biomass is not in the equation"):
+        couple(set_up(case), Fraction(1), Fraction(0))
+
+
 def test_more_growth_than_there_is_is_said() -> None:
     for setting, _, _ in subjects():
         most = setting.optimiser.optimise(setting.problem, setting.biomass_objective()).value
@@ -217,3 +301,16 @@ def test_nothing_meets_an_empty_set() -> None:
     assert sets.next() == frozenset()
     sets.meet(frozenset())
     assert sets.next() is None
+
+
+def test_a_solver_that_stops_or_errs_is_not_believed(monkeypatch: pytest.MonkeyPatch) -> None:
+    sets = HittingSets(2)
+    assert sets.next() == frozenset()
+    sets.meet(frozenset({0}))
+    monkeypatch.setattr(type(sets._model), "optimize", lambda model: "time_limit")
+    with pytest.raises(SolveError, match="stopped with 'time_limit'"):
+        sets.next()
+    # It says that all is well and leaves the old values.
+    monkeypatch.setattr(type(sets._model), "optimize", lambda model: "optimal")
+    with pytest.raises(SolveError, match="breaks a requirement"):
+        sets.next()

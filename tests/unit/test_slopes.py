@@ -7,7 +7,7 @@ from fractions import Fraction
 from yieldnet.optimum.engine import engine_named
 from yieldnet.optimum.problem import Bounds, ProblemBuilder
 from yieldnet.optimum.proof import Optimiser
-from yieldnet.optimum.slopes import slopes
+from yieldnet.optimum.slopes import Slope, slopes
 
 ONE = Fraction(1)
 
@@ -20,8 +20,8 @@ def test_a_range_moves_as_a_whole() -> None:
     optimiser = Optimiser(engine_named("glpk"))
     best = optimiser.optimise(builder.build(), {"x": ONE})
     more, less = slopes(optimiser, best, [{"range": ONE}, {"range": -ONE}])
-    assert (more.value, more.until) == (1, 7)
-    assert (less.value, less.until) == (-1, 3)
+    assert more == Slope(Fraction(1), Fraction(7))
+    assert less == Slope(Fraction(-1), Fraction(3))
 
 
 def test_a_corner_has_two_slopes() -> None:
@@ -32,5 +32,5 @@ def test_a_corner_has_two_slopes() -> None:
     optimiser = Optimiser(engine_named("glpk"))
     best = optimiser.optimise(builder.build(), {"x": ONE})
     more, less = slopes(optimiser, best, [{"limit": ONE}, {"limit": -ONE}])
-    assert (more.value, less.value) == (0, -1)
-    assert less.until == 2
+    assert more == Slope(Fraction(0), None)
+    assert less == Slope(Fraction(-1), Fraction(2))

@@ -18,6 +18,7 @@ _VERBS = {
     "screen": "All knock-outs to a depth, ranked.",
     "additions": "What added reactions would bring.",
     "tradeoff": "What two coefficients can be together, as a polygon.",
+    "couple": "Smallest knock-out sets that force product.",
     "compounds": "The compound and biomass library.",
     "networks": "The networks that ship with yieldnet.",
     "explain": "What a word or a finding code means.",

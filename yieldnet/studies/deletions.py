@@ -64,7 +64,7 @@ class DeletionRun:
     groups : sequence of sequence of int
         Columns that each deletable thing switches off.
     bounds : sequence of tuple
-        Low and high of every column, to restore them.
+        Low and high of every column as it stands.
     evaluate : callable or None
         Solves the problem as it stands and gives status, value; the plain objective if ``None``.
     twins : sequence of int or None
@@ -95,12 +95,11 @@ class DeletionRun:
                         break
         return status, value, used
 
-    def switch(self, members: Sequence[int], off: bool) -> None:
-        """Switch things off, or back on."""
+    def switch_off(self, members: Sequence[int]) -> None:
+        """Switch things off."""
         for place in members:
             for column in self.groups[place]:
-                low, high = (0.0, 0.0) if off else self.bounds[column]
-                self.problem.bound_column(column, low, high)
+                self.problem.bound_column(column, 0.0, 0.0)
 
     def forced(self) -> frozenset[int]:
         """Things with a flux that must run: switching those off gives something back."""
@@ -191,17 +190,19 @@ def delete_all(
     status, value, _ = known[()]
     yield Deletion((), value, status, True)
     done = 1
+    # Each set starts from the solution of the empty one: it is nearer than that of another set.
+    start = run.problem.remember()
     for size in range(1, depth + 1):
         for members in combinations(range(len(run.groups)), size):
             first = tuple(sorted({twins[place] for place in members}))
             answer = known.get(first) or _kept(known, first, forced)
             solved = answer is None
             if answer is None:
-                run.switch(first, off=True)
+                run.switch_off(first)
                 try:
                     answer = run.run(size < depth)
                 finally:
-                    run.switch(first, off=False)
+                    run.problem.return_to(start)
             known[first] = answer
             yield Deletion(members, answer[1], answer[0], solved)
             done += 1
