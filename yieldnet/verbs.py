@@ -470,11 +470,11 @@ def additions(
     (('transhydrogenase without cost',), Fraction(30, 37), Fraction(6, 7))
     """
     from yieldnet.model.network import Network
-    from yieldnet.reading.shipped import models_folder
+    from yieldnet.reading.shipped import shipped_candidates
     from yieldnet.studies.additions import add_candidates
 
     if candidates is None:
-        candidates = models_folder() / "candidates" / "central-metabolism.yaml"
+        candidates = shipped_candidates()
     written = candidates if isinstance(candidates, Network) else read_network(candidates)
     return add_candidates(
         _as_case(case),

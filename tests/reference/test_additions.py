@@ -20,7 +20,7 @@ from tests.reference.rows import FOLDER, Question
 from yieldnet.audit.rules import closure
 from yieldnet.model.binding import bind
 from yieldnet.prediction.layers import switched_off
-from yieldnet.reading.shipped import models_folder
+from yieldnet.reading.shipped import models_folder, shipped_candidates
 from yieldnet.studies.behaviour import behaviour
 from yieldnet.studies.candidates import merge
 from yieldnet.studies.setting import set_up
@@ -36,7 +36,7 @@ if TYPE_CHECKING:
     CaseOf = Callable[[Question], Case]
 
 F = Fraction
-SHIPPED = models_folder() / "candidates" / "central-metabolism.yaml"
+SHIPPED = shipped_candidates()
 MIXED = "glucose -> ? succinate + ? acetate + ? ethanol + ? lactate"
 FERREDOXIN = "  reduced ferredoxin: {kind: redox, formula: H2}"
 SCHUSTER = "Schuster and von Kamp, poster, University of Jena (3/4); 6/7 is the element limit"

@@ -566,5 +566,5 @@ def test_the_command_in_every_form(run: Run) -> None:
 
 
 def test_the_candidates_that_ship_are_no_network_of_their_own(run: Run, checkout: Path) -> None:
-    assert (checkout / "models" / "candidates" / "central-metabolism.yaml").exists()
-    assert "central-metabolism" not in run("networks").output
+    assert (checkout / "models" / "candidates.yaml").exists()
+    assert "candidates" not in run("networks").output

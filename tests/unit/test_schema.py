@@ -3,9 +3,12 @@
 from __future__ import annotations
 
 import json
+from pathlib import Path
 from typing import Any
 
 import pytest
+from jsonschema import Draft202012Validator
+from ruamel.yaml import YAML
 
 from yieldnet.reading.case_file import CASE_KEYS
 from yieldnet.reading.case_statements import CONDITION_KEYS
@@ -42,3 +45,36 @@ def test_every_mapping_says_which_keys_or_what_values_it_takes(schema: dict[str,
     for item in found:
         assert "additionalProperties" in item
         assert set(item.get("required", ())) <= set(item.get("properties", ()))
+
+
+CHECKOUT = Path(__file__).resolve().parent.parent.parent
+CASES = sorted(CHECKOUT.glob("examples/*/case.yaml"))
+NETWORKS = sorted(CHECKOUT.glob("models/*.yaml"))
+
+
+def _loaded(path: Path) -> object:
+    """The file as an editor would see it; numbers may come as numbers."""
+    return YAML(typ="safe", pure=True).load(path.read_text("utf-8"))
+
+
+def test_there_are_files_to_validate() -> None:
+    assert len(CASES) >= 6
+    assert len(NETWORKS) >= 3
+
+
+@pytest.mark.parametrize("path", CASES, ids=lambda path: path.parent.name)
+def test_every_shipped_case_is_valid(path: Path) -> None:
+    found = list(Draft202012Validator(case_schema()).iter_errors(_loaded(path)))
+    assert [error.message for error in found] == []
+
+
+@pytest.mark.parametrize("path", NETWORKS, ids=lambda path: path.stem)
+def test_every_shipped_network_is_valid(path: Path) -> None:
+    found = list(Draft202012Validator(network_schema()).iter_errors(_loaded(path)))
+    assert [error.message for error in found] == []
+
+
+def test_the_schemas_are_schemas_and_refuse() -> None:
+    for schema in (case_schema(), network_schema()):
+        Draft202012Validator.check_schema(schema)
+        assert list(Draft202012Validator(schema).iter_errors({"case": 3, "surprise": 1}))

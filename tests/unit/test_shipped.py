@@ -14,7 +14,9 @@ if TYPE_CHECKING:
 
 def test_shipped_networks_are_those_of_the_models_folder(checkout: Path) -> None:
     names = shipped.shipped_names()
-    assert names == tuple(sorted(path.stem for path in (checkout / "models").glob("*.yaml")))
+    files = {path.stem for path in (checkout / "models").glob("*.yaml")}
+    assert names == tuple(sorted(files - {"candidates"}))
+    assert shipped.shipped_candidates() == checkout / "models" / "candidates.yaml"
     assert "facultative-succinate" in names
 
 

@@ -4,7 +4,10 @@ from __future__ import annotations
 
 from pathlib import Path
 
-__all__ = ["find_shipped", "models_folder", "shipped_names"]
+__all__ = ["CANDIDATES", "find_shipped", "models_folder", "shipped_candidates", "shipped_names"]
+
+CANDIDATES = "candidates"
+"""Name of the shipped file of candidate reactions, which is no network of a cell."""
 
 
 def models_folder() -> Path:
@@ -16,7 +19,13 @@ def models_folder() -> Path:
 
 def shipped_names() -> tuple[str, ...]:
     """Names of the shipped networks, sorted."""
-    return tuple(sorted(item.stem for item in models_folder().glob("*.yaml")))
+    stems = {item.stem for item in models_folder().glob("*.yaml")}
+    return tuple(sorted(stems - {CANDIDATES}))
+
+
+def shipped_candidates() -> Path:
+    """Path of the shipped candidate reactions."""
+    return models_folder() / f"{CANDIDATES}.yaml"
 
 
 def find_shipped(name: str) -> Path | None:
