@@ -143,7 +143,9 @@ def _check_aim(answer: Prediction) -> None:
     assert within_bands is None or (within_bands >= value if most else within_bands <= value)
     above = [item.value for item in answer.ladder if RUNGS.index(item.rung) < 3][-1]
     assert answer.ladder[-1].value == value
-    assert own.percent == (value / above if above else None)
+    # Beyond zero a quotient says nothing: what is taken up is no share of what is given off.
+    meaningful = above is not None and above > 0 and value >= 0
+    assert own.percent == (value / above if meaningful else None)
     if own.percent is not None and own.side is not Direction.EITHER:
         assert own.percent <= 1 if most else own.percent >= 1
 

@@ -66,13 +66,13 @@ def test_groups_are_knocked_out_as_wholes() -> None:
 
 
 def test_the_command_prints_text_and_json() -> None:
-    arguments = ["couple", str(XYLOSE), "--least-yield", "0.4"]
+    arguments = ["couple", str(XYLOSE), "--yield", "0.4"]
     text = CliRunner().invoke(main, arguments)
     assert text.exit_code == 0
     assert "2 knock-outs at the least" in " ".join(text.output.split())
     assert max(len(line) for line in text.output.split("\n")) <= 80
     form = json.loads(CliRunner().invoke(main, [*arguments, "--json"]).output)
     assert form["sets"][0]["members"] == ["alcohol dehydrogenase", "lactate dehydrogenase"]
-    beyond = CliRunner().invoke(main, ["couple", str(XYLOSE), "--least-yield", "1.5"])
+    beyond = CliRunner().invoke(main, ["couple", str(XYLOSE), "--yield", "1.5"])
     assert beyond.exit_code == 1
     assert "no set of that size" in " ".join(beyond.output.split())

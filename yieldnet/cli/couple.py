@@ -12,7 +12,7 @@ __all__ = ["command"]
 @click.command("couple")
 @click.argument("case", type=click.Path())
 @click.option(
-    "--least-yield", required=True, help="Product to force, in mol/mol or with a unit: '0.3 g/g'."
+    "--yield", "least_yield", required=True, help="Product to force, in mol/mol or with a unit: '0.3 g/g'."
 )
 @click.option(
     "--growth-share",
@@ -38,7 +38,7 @@ def command(
 ) -> None:
     """Smallest knock-out sets of CASE that force product whenever the cell grows.
 
-    Example: yieldnet couple examples/succinate-from-xylose/case.yaml --least-yield 0.4
+    Example: yieldnet couple examples/succinate-from-xylose/case.yaml --yield 0.4
     """
     from yieldnet.foundation.errors import YieldnetError
     from yieldnet.verbs import couple

@@ -63,6 +63,12 @@ _WORDS = {
     " in what comes out.",
     "RQ": "Respiratory quotient: carbon dioxide given off per oxygen taken up.",
     "ash": "Mineral part of the dry weight, as a fraction of the whole dry weight.",
+    "guaranteed product": "The least product at most growth: what the cell must make if it grows as"
+    " well as it can.",
+    "coupling": "Whether growth makes product: none, only at high growth, or always.",
+    "chain": "Reactions that run or stand still together; a screen counts them once.",
+    "candidate": "A reaction or group that a network lacks and that an addition tries.",
+    "trade-off": "All that is possible in two coefficients together; a polygon with corners.",
     # What users say instead
     "maximum theoretical yield": "The best value of the aim; say which rung: of elements alone, or"
     " of the network with energy.",
