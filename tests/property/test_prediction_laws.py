@@ -144,8 +144,8 @@ def _check_aim(answer: Prediction) -> None:
     above = [item.value for item in answer.ladder if RUNGS.index(item.rung) < 3][-1]
     assert answer.ladder[-1].value == value
     # Beyond zero a quotient says nothing: what is taken up is no share of what is given off.
-    meaningful = above is not None and above > 0 and value >= 0
-    assert own.percent == (value / above if meaningful else None)
+    share = value / above if above is not None and above > 0 and value >= 0 else None
+    assert own.percent == share
     if own.percent is not None and own.side is not Direction.EITHER:
         assert own.percent <= 1 if most else own.percent >= 1
 
