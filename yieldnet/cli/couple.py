@@ -12,7 +12,10 @@ __all__ = ["command"]
 @click.command("couple")
 @click.argument("case", type=click.Path())
 @click.option(
-    "--yield", "least_yield", required=True, help="Product to force, in mol/mol or with a unit: '0.3 g/g'."
+    "--yield",
+    "least_yield",
+    required=True,
+    help="Product to force, in mol/mol or with a unit: '0.3 g/g'.",
 )
 @click.option(
     "--growth-share",
