@@ -3,14 +3,9 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, field
-from fractions import Fraction
 from typing import TYPE_CHECKING
 
-from yieldnet.chemistry.formula import Formula
 from yieldnet.chemistry.library import (
-    biomass_entries,
-    find_biomass,
-    find_compound,
     library_names,
 )
 from yieldnet.foundation.exact import WrittenNumber
@@ -20,7 +15,6 @@ from yieldnet.model.expression import Expression
 from yieldnet.model.network import (
     BIOMASS,
     GROWTH,
-    Carrier,
     CarrierKind,
     Compound,
     Direction,
@@ -32,9 +26,9 @@ from yieldnet.model.network import (
     Strain,
 )
 from yieldnet.reading.equations import read_equation
-from yieldnet.reading.fields import Fields, entries, number, text, text_list, unsplit_pairs
-from yieldnet.reading.fields import formula as formula_of
+from yieldnet.reading.fields import Fields, entries, number, text, text_list
 from yieldnet.reading.names import NameBook
+from yieldnet.reading.network_matter import MatterReader
 from yieldnet.reading.nodes import Kind, Node, compose
 from yieldnet.reading.quantities import read_quantity
 from yieldnet.reading.source import MAX_FINDINGS, read_text, too_many
@@ -43,10 +37,8 @@ if TYPE_CHECKING:
     from yieldnet.foundation.findings import SourceSpan
     from yieldnet.model.equation import Equation, Term
 
-__all__ = ["MAX_CHARGE", "NETWORK_KEYS", "load_network", "parse_network"]
+__all__ = ["NETWORK_KEYS", "load_network", "parse_network"]
 
-MAX_CHARGE = 50
-"""Largest charge of a compound; beyond it is a slip [-]."""
 NETWORK_KEYS = (
     "network",
     "about",
@@ -137,29 +129,31 @@ class _Reader:
     path: str
     findings: Findings
     book: NameBook = field(init=False)
-    carriers: list[Carrier] = field(default_factory=list)
-    own: list[Compound] = field(default_factory=list)
+    matter: MatterReader = field(init=False)
     parameters: list[Parameter] = field(default_factory=list)
     declared: list[str] = field(default_factory=list)
     crossing_spans: dict[str, SourceSpan] = field(default_factory=dict)
 
     def __post_init__(self) -> None:
         self.book = NameBook(self.findings)
+        has_growth = any(name.text == "growth" for name, _ in self.root.pairs)
+        self.matter = MatterReader(self.findings, self.book, has_growth)
 
     def network(self) -> Network:
         fields = Fields(self.root, "the network file", NETWORK_KEYS, self.findings)
         fields.need("network", "Begin the file with 'network: ' and a title.")
         self._parameters(fields.get("parameters"))
-        self._carriers(fields.get("carriers"))
-        self._compounds(fields.get("compounds"))
-        biomass = self._biomass(fields.get("growth"))
+        matter = self.matter
+        matter.read_carriers(fields.get("carriers"))
+        matter.read_compounds(fields.get("compounds"))
+        biomass = matter.read_biomass(fields.get("growth"))
         crossing_node = fields.need(
             "crossing", "Say which compounds cross the cell: in, out, either."
         )
         crossing = self._crossing(crossing_node)
         reactions = self._reactions(fields.need("reactions", "Write at least one reaction."))
         growth = self._growth(fields.get("growth"), biomass)
-        inside = {item.name for item in self.carriers}
+        inside = {item.name for item in matter.carriers}
         allowed = crossing_node is None or BIOMASS in dict(crossing) or BIOMASS in inside
         if biomass is not None and not allowed:
             self.findings.add(
@@ -170,13 +164,16 @@ class _Reader:
             )
         strains = self._strains(fields.get("strains"), reactions)
         maintenance = self._maintenance(fields.get("maintenance"))
-        listed = dict.fromkeys([item.name for item in self.own])
+        listed = {item.name for item in matter.own}
         library = self.book.taken
         return Network(
             title=fields.text("network"),
             about=fields.text("about"),
-            compounds=(*self.own, *(library[name] for name in library if name not in listed)),
-            carriers=tuple(self.carriers),
+            compounds=(
+                *self.matter.own,
+                *(library[name] for name in library if name not in listed),
+            ),
+            carriers=tuple(self.matter.carriers),
             crossing=crossing,
             reactions=reactions,
             parameters=tuple(self.parameters),
@@ -187,10 +184,6 @@ class _Reader:
             crossing_spans=tuple(self.crossing_spans.items()),
             span=self.root.span,
         )
-
-    def root_has(self, key: str) -> bool:
-        """Whether the file has a section."""
-        return any(name.text == key for name, _ in self.root.pairs)
 
     def _parameters(self, node: Node | None) -> None:
         for key, value in entries(node, "'parameters'", self.findings) if node else ():
@@ -238,212 +231,6 @@ class _Reader:
                     )
                 )
 
-    def _carriers(self, node: Node | None) -> None:
-        for key, value in entries(node, "'carriers'", self.findings) if node else ():
-            label = f"carrier {key.text!r}"
-            fields = Fields(value, label, ("kind", "formula", "about"), self.findings)
-            self.book.define(key.text, None, key.span)
-            if key.text == BIOMASS:
-                self.findings.add(
-                    "YN305",
-                    f"{BIOMASS!r} is what growth makes, and cannot be a carrier",
-                    key.span,
-                    hint="Rename the carrier.",
-                )
-            kind = fields.need("kind", "Say 'kind: energy' or 'kind: redox'.")
-            if kind is None:
-                continue
-            if kind.text not in set(CarrierKind):
-                self.findings.add(
-                    "YN112",
-                    f"{label} has an unknown kind",
-                    kind.span,
-                    left="expected energy or redox",
-                    right=f"found {kind.text!r}",
-                )
-                continue
-            written = fields.get("formula")
-            formula = Formula(()) if written is None else formula_of(written, label, self.findings)
-            if kind.text == CarrierKind.ENERGY and formula and formula.elements:
-                self.findings.add(
-                    "YN415",
-                    f"{label} is an energy carrier with elements",
-                    fields.span("formula"),
-                    left=f"formula {formula}",
-                    hint="Leave its formula out: phosphate and the spent half are not written.",
-                )
-            if kind.text == CarrierKind.REDOX and written is None:
-                self.findings.add(
-                    "YN111",
-                    f"{label} has no 'formula'",
-                    value.span,
-                    hint="Give what it carries: 'formula: H2' for NADH.",
-                )
-            if formula is not None:
-                self.carriers.append(
-                    Carrier(
-                        name=key.text,
-                        kind=CarrierKind(kind.text),
-                        formula=formula,
-                        about=fields.text("about"),
-                        span=key.span,
-                    )
-                )
-                self._against_library(key, formula)
-
-    def _compounds(self, node: Node | None) -> None:
-        known = library_names()
-        pairs = unsplit_pairs(node, "'compounds'", self.findings, known) if node else ()
-        for key, value in pairs:
-            label = f"compound {key.text!r}"
-            twin = self.book.twin(key.text)
-            if twin is not None:
-                self.findings.add(
-                    "YN303",
-                    f"{key.text!r} and {twin!r} are two names of one compound",
-                    key.span,
-                    hint="Define it once, and use one name throughout the file.",
-                )
-            if key.text == BIOMASS and self.root_has("growth"):
-                self.findings.add(
-                    "YN305",
-                    f"{BIOMASS!r} is defined here and under 'growth'",
-                    key.span,
-                    hint="Keep it under 'growth' alone.",
-                )
-                continue
-            if key.text in self.book.own:
-                self.findings.add(
-                    "YN305",
-                    f"{key.text!r} is a carrier and a compound",
-                    key.span,
-                    hint="Keep it in one of the two sections.",
-                )
-                continue
-            about, charge, place = "", None, value
-            if value.kind is Kind.MAPPING:
-                fields = Fields(value, label, ("formula", "charge", "about"), self.findings)
-                about, charge = fields.text("about"), fields.number("charge")
-                inner = fields.need("formula", "Give its formula.")
-                if inner is None:
-                    self.book.define(key.text, None, key.span)
-                    continue
-                place = inner
-            formula = formula_of(place, label, self.findings)
-            if formula is not None and charge is not None:
-                formula = self._charged(formula, charge, label, place.span)
-            self._against_library(key, formula)
-            compound = None
-            if formula is not None:
-                compound = Compound(name=key.text, formula=formula, about=about, span=key.span)
-                self.own.append(compound)
-            self.book.define(key.text, compound, key.span)
-
-    def _charged(
-        self, formula: Formula, charge: WrittenNumber, label: str, span: SourceSpan
-    ) -> Formula:
-        """Formula with the charge that stands beside it."""
-        if formula.charge:
-            self.findings.add(
-                "YN305",
-                f"{label} has a charge in its formula and another beside it",
-                span,
-                left=f"formula {formula.charge:+d}",
-                right=f"charge {charge.text}",
-                hint="Keep one.",
-            )
-        elif charge.value.denominator != 1:
-            self.findings.add(
-                "YN201",
-                f"{label}: charge {charge.text} is not whole",
-                span,
-                hint="Write a whole number.",
-            )
-        elif abs(charge.value) > MAX_CHARGE:
-            self.findings.add(
-                "YN202",
-                f"{label}: no compound has the charge {charge.text}",
-                span,
-                left=f"limit {MAX_CHARGE}",
-            )
-        else:
-            return Formula(formula.elements, int(charge.value))
-        return formula
-
-    def _against_library(self, key: Node, formula: Formula | None) -> None:
-        entry = find_compound(key.text)
-        if entry is None or formula is None:
-            return
-        same = dict(entry.formula.elements) == dict(formula.elements)
-        if not same or entry.formula.charge != formula.charge:
-            self.findings.add(
-                "YN304",
-                f"{key.text!r} has another formula in the compound library",
-                key.span,
-                left=f"here {formula}",
-                right=f"library {entry.formula}",
-                hint="Leave the formula out to use the library's, or give the compound another name"
-                " (acids are written undissociated there).",
-            )
-
-    def _biomass(self, node: Node | None) -> Compound | None:
-        """Biomass compound; read before the equations, which name it."""
-        if node is None or node.kind is not Kind.MAPPING:
-            return None
-        value = next((item for key, item in node.pairs if key.text == BIOMASS), None)
-        compound: Compound | None = None
-        if value is not None and value.kind is Kind.MAPPING:
-            fields = Fields(value, "the biomass", ("formula", "ash", "about"), self.findings)
-            written = fields.need("formula", "Give its ash-free formula, such as CH1.8O0.5N0.2.")
-            formula = formula_of(written, "the biomass", self.findings) if written else None
-            ash = fields.number("ash")
-            if ash is not None and not 0 <= ash.value < 1:
-                self.findings.add(
-                    "YN210",
-                    f"ash {ash.text} is not a fraction of the dry weight",
-                    fields.span("ash"),
-                    hint="Write 0.05 for 5 % of the dry weight.",
-                )
-                ash = None
-            if formula is not None:
-                compound = Compound(
-                    name=BIOMASS,
-                    formula=formula,
-                    ash=ash.value if ash else Fraction(0),
-                    about=fields.text("about"),
-                    span=value.span,
-                )
-        elif value is not None:
-            word = text(value, "the biomass", self.findings)
-            entry = find_biomass(word) if word else None
-            if entry is not None:
-                compound = Compound(
-                    name=BIOMASS,
-                    formula=entry.formula,
-                    ash=entry.ash or Fraction(0),
-                    about=f"{entry.name}: {entry.source}",
-                    span=value.span,
-                )
-            elif word:
-                self.findings.add(
-                    "YN301",
-                    f"biomass {word!r} is not in the library",
-                    value.span,
-                    hint=near(word, [item.name for item in biomass_entries()])
-                    or "Write a mapping: {formula: CH1.8O0.5N0.2, ash: 0.05}.",
-                )
-        self.book.define(BIOMASS, compound, node.span)
-        if compound is not None:
-            self.own.append(compound)
-            if compound.formula["P"]:
-                self.findings.add(
-                    "YN413",
-                    f"the biomass formula {compound.formula} holds phosphorus",
-                    compound.span,
-                    hint="Phosphate is left out of these networks: leave P out of the biomass.",
-                )
-        return compound
-
     def _crossing(self, node: Node | None) -> tuple[tuple[str, Direction], ...]:
         found: dict[str, tuple[Direction, SourceSpan]] = {}
         if node is None:
@@ -457,7 +244,7 @@ class _Reader:
                 name = self.book.resolve(item.text, item.span)
                 if name is None:
                     continue
-                if name in {carrier.name for carrier in self.carriers}:
+                if name in {carrier.name for carrier in self.matter.carriers}:
                     self.findings.add(
                         "YN305",
                         f"the carrier {name!r} cannot cross the cell boundary",
@@ -629,7 +416,7 @@ class _Reader:
                 )
             return None
         key, value = pairs[0]
-        energy = [item.name for item in self.carriers if item.kind is CarrierKind.ENERGY]
+        energy = [item.name for item in self.matter.carriers if item.kind is CarrierKind.ENERGY]
         if key.text not in energy:
             self.findings.add(
                 "YN302",
