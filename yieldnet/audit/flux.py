@@ -6,8 +6,8 @@ from fractions import Fraction
 from typing import TYPE_CHECKING
 
 from yieldnet.foundation.findings import Findings, Severity
-from yieldnet.model.network import CarrierKind, Direction
-from yieldnet.optimum.problem import FREE, Bounds, ProblemBuilder
+from yieldnet.model.network import CarrierKind
+from yieldnet.optimum.problem import FREE, MADE, SHUT, Bounds, ProblemBuilder, crossing_bounds
 from yieldnet.optimum.proof import Status
 
 if TYPE_CHECKING:
@@ -26,7 +26,6 @@ __all__ = [
 
 _ZERO = Fraction(0)
 _ONE = Fraction(1)
-_SHUT = Bounds(_ZERO, _ZERO)
 
 
 def closed_network(bound: BoundNetwork) -> Problem:
@@ -66,20 +65,17 @@ def _steady_state(bound: BoundNetwork, crossing_open: bool, largest: Fraction | 
         builder.add_column(reaction.name, Bounds(least, largest))
         for name, amount in reaction.coefficients:
             sums.setdefault(name, {})[reaction.name] = amount
-    ways = {
-        Direction.CONSUMED: Bounds(None, _ZERO),
-        Direction.PRODUCED: Bounds(_ZERO, None),
-        Direction.EITHER: FREE,
-    }
     for name, direction in bound.network.crossing:
-        builder.add_column(f"crossing {name}", ways[direction] if crossing_open else _SHUT)
+        builder.add_column(
+            f"crossing {name}", crossing_bounds(direction) if crossing_open else SHUT
+        )
         sums.setdefault(name, {})[f"crossing {name}"] = -_ONE
     for item in bound.network.carriers:
         if item.kind is CarrierKind.ENERGY:
-            builder.add_column(f"surplus {item.name}", Bounds(_ZERO, None))
+            builder.add_column(f"surplus {item.name}", MADE)
             sums.setdefault(item.name, {})[f"surplus {item.name}"] = -_ONE
     for name, entries in sums.items():
-        builder.add_row(name, "pathways", _SHUT, entries)
+        builder.add_row(name, "pathways", SHUT, entries)
     return builder.build()
 
 

@@ -16,7 +16,7 @@ from yieldnet.chemistry.library import find_compound
 from yieldnet.foundation.findings import Findings
 from yieldnet.model.binding import composition
 from yieldnet.model.network import Compound, Direction
-from yieldnet.optimum.problem import FREE, Bounds, ProblemBuilder
+from yieldnet.optimum.problem import SHUT, ProblemBuilder, crossing_bounds
 from yieldnet.optimum.proof import Status
 
 if TYPE_CHECKING:
@@ -29,7 +29,6 @@ if TYPE_CHECKING:
 __all__ = ["missing_compounds"]
 
 _USUAL = ("carbon dioxide", "water", "ammonia", "oxygen")
-_ZERO = Fraction(0)
 _Elements = dict[str, dict[str, Fraction]]
 
 
@@ -115,20 +114,15 @@ def _problem(case: Case, elements: _Elements, added: list[tuple[Compound, Direct
     builder = ProblemBuilder()
     add_coefficient_columns(builder, case)
     matrix = {element: dict(line) for element, line in elements.items()}
-    bounds = {
-        Direction.CONSUMED: Bounds(None, _ZERO),
-        Direction.PRODUCED: Bounds(_ZERO, None),
-        Direction.EITHER: FREE,
-    }
     for compound, direction in added:
-        builder.add_column(yield_column(compound.name), bounds[direction])
+        builder.add_column(yield_column(compound.name), crossing_bounds(direction))
         for element, atoms in composition(compound.formula).items():
             matrix.setdefault(element, {})[compound.name] = atoms
     for element, line in matrix.items():
         builder.add_row(
             f"{element} balance",
             "elements",
-            Bounds(_ZERO, _ZERO),
+            SHUT,
             {yield_column(name): value for name, value in line.items()},
         )
     # Exact coefficients alone: measured values and demands may contradict for other reasons.

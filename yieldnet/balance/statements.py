@@ -13,7 +13,7 @@ from typing import TYPE_CHECKING
 from yieldnet.foundation.exact import root_of_square
 from yieldnet.model.case import BAND, Measurement
 from yieldnet.model.network import BIOMASS, Direction
-from yieldnet.optimum.problem import FREE, Bounds
+from yieldnet.optimum.problem import FREE, Bounds, crossing_bounds
 
 if TYPE_CHECKING:
     from collections.abc import Mapping
@@ -145,20 +145,12 @@ def side_sign(side: Direction) -> int:
     return -1 if side is Direction.CONSUMED else 1
 
 
-def _bounds(item: OverallCoefficient) -> Bounds:
-    if item.side is Direction.CONSUMED:
-        return Bounds(None, Fraction(0))
-    if item.side is Direction.PRODUCED:
-        return Bounds(Fraction(0), None)
-    return FREE
-
-
 def add_coefficient_columns(builder: ProblemBuilder, case: Case) -> None:
     """Add the basis (1 mol taken up) and every coefficient of the overall equation."""
     one = Fraction(-1)
     builder.add_column(yield_column(case.basis.name), Bounds(one, one))
     for item in case.coefficients:
-        builder.add_column(yield_column(item.name), _bounds(item))
+        builder.add_column(yield_column(item.name), crossing_bounds(item.side))
 
 
 def add_statement_rows(builder: ProblemBuilder, case: Case, statements: Statements) -> None:

@@ -7,14 +7,15 @@ carry their residual; whoever prints them says so, and proves those that matter.
 from __future__ import annotations
 
 from enum import StrEnum
-from typing import TYPE_CHECKING, Any
+from typing import TYPE_CHECKING
 
 from yieldnet.foundation.errors import SolveError
+from yieldnet.optimum.glpk_problem import GlpkProblem
 
 if TYPE_CHECKING:
     from collections.abc import Iterable, Mapping
 
-    from yieldnet.optimum.problem import Bounds, Problem
+    from yieldnet.optimum.problem import Problem
 
 __all__ = ["FEASIBILITY", "MAX_ITERATIONS", "FastProblem", "FastStatus"]
 
@@ -32,7 +33,7 @@ class FastStatus(StrEnum):
     UNBOUNDED = "unbounded"
 
 
-class FastProblem:
+class FastProblem(GlpkProblem):
     """A problem loaded once into GLPK.
 
     Parameters
@@ -42,45 +43,18 @@ class FastProblem:
     """
 
     def __init__(self, problem: Problem) -> None:
-        import swiglpk  # type: ignore[import-untyped]
-
-        self._glpk: Any = swiglpk
-        glpk = self._glpk
+        super().__init__(problem, MAX_ITERATIONS)
         self.columns = len(problem.columns)
         self.rows = len(problem.rows)
         self._entries = problem.matrix.rows
         # The basis that GLPK builds to begin with is announced on the terminal otherwise.
-        glpk.glp_term_out(glpk.GLP_OFF)
-        self._handle = glpk.glp_create_prob()
-        glpk.glp_add_rows(self._handle, max(1, self.rows))
-        glpk.glp_add_cols(self._handle, self.columns)
-        size = sum(map(len, problem.matrix.rows))
-        rows, columns = glpk.intArray(size + 1), glpk.intArray(size + 1)
-        values = glpk.doubleArray(size + 1)
-        place = 0
-        for i, row in enumerate(problem.matrix.rows, 1):
-            for j, value in row:
-                place += 1
-                # The same as float(value), in half the time; so below.
-                factor = value.numerator / value.denominator
-                rows[place], columns[place], values[place] = i, j + 1, factor
-        glpk.glp_load_matrix(self._handle, size, rows, columns, values)
-        self._control = glpk.glp_smcp()
-        glpk.glp_init_smcp(self._control)
-        self._control.msg_lev = glpk.GLP_MSG_OFF
-        self._control.it_lim = MAX_ITERATIONS
+        self._glpk.glp_term_out(self._glpk.GLP_OFF)
         for j, column in enumerate(problem.columns):
-            self.bound_column(j, *_floats(column.bounds))
+            self.bound_column(j, *column.bounds.as_floats())
         for i, balance in enumerate(problem.rows):
-            self.bound_row(i, *_floats(balance.bounds))
+            self.bound_row(i, *balance.bounds.as_floats())
         self._objective: dict[int, float] = {}
         self._fresh()
-
-    def __del__(self) -> None:
-        handle = getattr(self, "_handle", None)
-        free = getattr(self._glpk, "glp_delete_prob", None) if handle is not None else None
-        if free is not None:  # at the end of the interpreter the library may be gone already
-            free(handle)
 
     def remember(self) -> FastProblem:
         """The problem as it stands, bounds, objective and basis, to return to."""
@@ -100,25 +74,16 @@ class FastProblem:
     def _fresh(self) -> None:
         self._glpk.glp_adv_basis(self._handle, 0)
 
-    def _kind(self, low: float | None, high: float | None) -> tuple[int, float, float]:
-        glpk = self._glpk
-        if low is None and high is None:
-            return glpk.GLP_FR, 0.0, 0.0
-        if high is None and low is not None:
-            return glpk.GLP_LO, low, 0.0
-        if low is None and high is not None:
-            return glpk.GLP_UP, 0.0, high
-        assert low is not None
-        assert high is not None
-        return (glpk.GLP_FX if low == high else glpk.GLP_DB), low, high
+    def _ends(self, low: float | None, high: float | None) -> tuple[int, float, float]:
+        return self._kind(low, high, low == high)
 
     def bound_column(self, column: int, low: float | None, high: float | None) -> None:
         """Move the bounds of a column; ``None`` for none."""
-        self._glpk.glp_set_col_bnds(self._handle, column + 1, *self._kind(low, high))
+        self._glpk.glp_set_col_bnds(self._handle, column + 1, *self._ends(low, high))
 
     def bound_row(self, row: int, low: float | None, high: float | None) -> None:
         """Move the bounds of a row; ``None`` for none."""
-        self._glpk.glp_set_row_bnds(self._handle, row + 1, *self._kind(low, high))
+        self._glpk.glp_set_row_bnds(self._handle, row + 1, *self._ends(low, high))
 
     def add_row(
         self, coefficients: Mapping[int, float], low: float | None, high: float | None
@@ -131,7 +96,7 @@ class FastProblem:
             columns[place], values[place] = j + 1, value
         row = glpk.glp_add_rows(self._handle, 1)
         glpk.glp_set_mat_row(self._handle, row, size, columns, values)
-        glpk.glp_set_row_bnds(self._handle, row, *self._kind(low, high))
+        glpk.glp_set_row_bnds(self._handle, row, *self._ends(low, high))
 
     def ties(self) -> list[tuple[int, float]]:
         """For each column, the first to which balances of two tie it, and its ratio to that."""
@@ -224,11 +189,3 @@ class FastProblem:
             high = self._glpk.glp_get_row_ub(self._handle, i + 1)
             worst = max(worst, low - activity, activity - high)
         return worst
-
-
-def _floats(bounds: Bounds) -> tuple[float | None, float | None]:
-    low, high = bounds.low, bounds.high
-    return (
-        None if low is None else low.numerator / low.denominator,
-        None if high is None else high.numerator / high.denominator,
-    )

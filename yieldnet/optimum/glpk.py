@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
-from typing import TYPE_CHECKING, Any
+from typing import TYPE_CHECKING
 
 from yieldnet.optimum.basis import Basis
+from yieldnet.optimum.glpk_problem import GlpkProblem
 
 if TYPE_CHECKING:
     from collections.abc import Mapping
@@ -30,7 +31,7 @@ class GlpkEngine:
         return GlpkSession(problem)
 
 
-class GlpkSession:
+class GlpkSession(GlpkProblem):
     """One GLPK problem object.
 
     Parameters
@@ -40,30 +41,10 @@ class GlpkSession:
     """
 
     def __init__(self, problem: Problem) -> None:
-        import swiglpk  # type: ignore[import-untyped]
-
-        self._glpk: Any = swiglpk
-        self._matrix = problem.matrix
+        super().__init__(problem, MAX_ITERATIONS)
         glpk = self._glpk
-        self._handle = glpk.glp_create_prob()
-        glpk.glp_add_rows(self._handle, max(1, len(problem.rows)))
-        glpk.glp_add_cols(self._handle, max(1, len(problem.columns)))
-        entries = [
-            (i + 1, j + 1, float(value))
-            for i, row in enumerate(problem.matrix.rows)
-            for j, value in row
-        ]
-        size = len(entries)
-        rows, columns = glpk.intArray(size + 1), glpk.intArray(size + 1)
-        values = glpk.doubleArray(size + 1)
-        for place, (i, j, value) in enumerate(entries, 1):
-            rows[place], columns[place], values[place] = i, j, value
-        glpk.glp_load_matrix(self._handle, size, rows, columns, values)
-        self._control = glpk.glp_smcp()
-        glpk.glp_init_smcp(self._control)
-        self._control.msg_lev = glpk.GLP_MSG_OFF
+        self._matrix = problem.matrix
         self._control.meth = glpk.GLP_PRIMAL
-        self._control.it_lim = MAX_ITERATIONS
         self._control.tm_lim = MAX_MILLISECONDS
         self._columns: list[Bounds | None] = [None] * len(problem.columns)
         self._rows: list[Bounds | None] = [None] * len(problem.rows)
@@ -71,12 +52,6 @@ class GlpkSession:
         if not problem.rows:
             glpk.glp_set_row_bnds(self._handle, 1, glpk.GLP_FR, 0.0, 0.0)
         glpk.glp_std_basis(self._handle)
-
-    def __del__(self) -> None:
-        handle = getattr(self, "_handle", None)
-        free = getattr(self._glpk, "glp_delete_prob", None) if handle is not None else None
-        if free is not None:  # at the end of the interpreter the library may be gone already
-            free(handle)
 
     def suggest(self, problem: Problem, objective: Mapping[int, float], maximise: bool) -> Basis:
         """Basis at which GLPK's primal simplex stopped."""
@@ -86,11 +61,11 @@ class GlpkSession:
         # Unchanged columns and rows are the same objects, so most of this is one comparison each.
         for j, column in enumerate(problem.columns):
             if column.bounds is not self._columns[j]:
-                glpk.glp_set_col_bnds(handle, j + 1, *self._kind(column.bounds))
+                glpk.glp_set_col_bnds(handle, j + 1, *self._kind_of(column.bounds))
                 self._columns[j] = column.bounds
         for i, row in enumerate(problem.rows):
             if row.bounds is not self._rows[i]:
-                glpk.glp_set_row_bnds(handle, i + 1, *self._kind(row.bounds))
+                glpk.glp_set_row_bnds(handle, i + 1, *self._kind_of(row.bounds))
                 self._rows[i] = row.bounds
         for j in self._objective:
             glpk.glp_set_obj_coef(handle, j + 1, 0.0)
@@ -104,19 +79,9 @@ class GlpkSession:
             glpk.glp_simplex(handle, self._control)
         return self._basis(len(problem.columns), len(problem.rows))
 
-    def _kind(self, bounds: Bounds) -> tuple[int, float, float]:
-        low, high = bounds.low, bounds.high
-        glpk = self._glpk
-        if low is None and high is None:
-            return glpk.GLP_FR, 0.0, 0.0
-        if high is None and low is not None:
-            return glpk.GLP_LO, float(low), 0.0
-        if low is None and high is not None:
-            return glpk.GLP_UP, 0.0, float(high)
-        assert low is not None
-        assert high is not None
-        kind = glpk.GLP_FX if low == high else glpk.GLP_DB
-        return kind, float(low), float(high)
+    def _kind_of(self, bounds: Bounds) -> tuple[int, float, float]:
+        # Ends that differ by less than floats can tell are no fixed value.
+        return self._kind(*bounds.as_floats(), bounds.fixed)
 
     def _basis(self, columns: int, rows: int) -> Basis:
         glpk, handle = self._glpk, self._handle

@@ -7,13 +7,27 @@ only.
 from __future__ import annotations
 
 from dataclasses import dataclass, field, replace
+from fractions import Fraction
 from typing import TYPE_CHECKING
+
+from yieldnet.model.network import Direction
 
 if TYPE_CHECKING:
     from collections.abc import Mapping
-    from fractions import Fraction
 
-__all__ = ["FREE", "Bounds", "Column", "Matrix", "Problem", "ProblemBuilder", "Row"]
+__all__ = [
+    "FREE",
+    "MADE",
+    "SHUT",
+    "Bounds",
+    "Column",
+    "Matrix",
+    "Problem",
+    "ProblemBuilder",
+    "Row",
+    "crossing_bounds",
+    "flux_bounds",
+]
 
 
 @dataclass(frozen=True, slots=True)
@@ -32,9 +46,37 @@ class Bounds:
         """Whether only one value is left."""
         return self.low is not None and self.low == self.high
 
+    def as_floats(self) -> tuple[float | None, float | None]:
+        """Low and high as floats."""
+        low, high = self.low, self.high
+        # The same as float(low), in half the time.
+        return (
+            None if low is None else low.numerator / low.denominator,
+            None if high is None else high.numerator / high.denominator,
+        )
+
 
 FREE = Bounds()
 """No bound on either side."""
+MADE = Bounds(Fraction(0), None)
+"""Zero or more."""
+SHUT = Bounds(Fraction(0), Fraction(0))
+"""Zero."""
+_CROSSING = {
+    Direction.CONSUMED: Bounds(None, Fraction(0)),
+    Direction.PRODUCED: MADE,
+    Direction.EITHER: FREE,
+}
+
+
+def crossing_bounds(direction: Direction) -> Bounds:
+    """Bounds of what may cross the cell boundary that way; what is given off counts positive."""
+    return _CROSSING[direction]
+
+
+def flux_bounds(reversible: bool) -> Bounds:
+    """Bounds of the flux of a reaction."""
+    return FREE if reversible else MADE
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)

@@ -17,7 +17,7 @@ from dataclasses import dataclass
 from fractions import Fraction
 from typing import TYPE_CHECKING
 
-from yieldnet.optimum.problem import Bounds, Column, Matrix, Problem, Row
+from yieldnet.optimum.problem import MADE, SHUT, Bounds, Column, Matrix, Problem, Row
 from yieldnet.optimum.proof import Status
 
 if TYPE_CHECKING:
@@ -137,18 +137,17 @@ def _ends(
             entries[problem.row(name)].append((place[k], -amount))
     line = [(problem.column(name), factor) for name, factor in best.objective if factor]
     line += [(place[k], -(values[k] or _ZERO)) for k in wanted]
-    shut = Bounds(_ZERO, _ZERO)
     level = Bounds(best.value, best.value)
     extended = Problem(
         columns=(
             *problem.columns,
-            *(Column(name=f"step {k}", bounds=shut) for k in wanted),
+            *(Column(name=f"step {k}", bounds=SHUT) for k in wanted),
         ),
         rows=(*problem.rows, Row(name="objective on its line", layer="", bounds=level)),
         matrix=Matrix(tuple(tuple(row) for row in (*entries, line)), size + len(wanted)),
     )
     for k in wanted:
-        opened = extended.with_columns({f"step {k}": Bounds(_ZERO, None)})
+        opened = extended.with_columns({f"step {k}": MADE})
         answer = optimiser.optimise(opened, {f"step {k}": _ONE})
         ends[k] = answer.value if answer.status is Status.OPTIMAL else None
     return ends

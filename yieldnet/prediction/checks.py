@@ -11,7 +11,7 @@ from yieldnet.foundation.exact import root_of_square
 from yieldnet.foundation.findings import Findings, Severity
 from yieldnet.model.case import AimDirection
 from yieldnet.model.network import BIOMASS, GROWTH
-from yieldnet.optimum.problem import FREE, Bounds
+from yieldnet.optimum.problem import flux_bounds
 from yieldnet.optimum.proof import Status
 from yieldnet.prediction.layers import flux_column, switched_off
 
@@ -131,10 +131,7 @@ def idle_switches(optimiser: Optimiser, layers: Layers) -> Findings:
     off = switched_off(case)
     if not off:
         return findings
-    ways = {
-        item.name: FREE if item.reversible else Bounds(Fraction(0), None)
-        for item in bound.reactions
-    }
+    ways = {item.name: flux_bounds(item.reversible) for item in bound.reactions}
     everything = layers.problem("pathways").with_columns(
         {flux_column(name): ways[name] for name in off if name in ways}
     )

@@ -19,7 +19,7 @@ from typing import TYPE_CHECKING
 from yieldnet.balance.statements import band, is_exact, kind_of, side_sign, with_bands, yield_column
 from yieldnet.model.case import EnergySurplus
 from yieldnet.model.network import Direction
-from yieldnet.optimum.problem import FREE, Bounds
+from yieldnet.optimum.problem import FREE, MADE, SHUT, Bounds, crossing_bounds, flux_bounds
 from yieldnet.optimum.proof import Status
 from yieldnet.optimum.ranges import column_ranges
 from yieldnet.prediction.layers import (
@@ -43,12 +43,6 @@ __all__ = ["Conflict", "ConflictMember", "find_conflict"]
 MAX_ROUNDS = 400
 """Most sets tried for the least number of statements; beyond it the set is only irreducible [-]."""
 _ZERO = Fraction(0)
-_MADE = Bounds(_ZERO, None)
-_WAYS = {
-    Direction.CONSUMED: Bounds(None, _ZERO),
-    Direction.PRODUCED: _MADE,
-    Direction.EITHER: FREE,
-}
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -264,13 +258,13 @@ def _open_columns(layers: Layers, statements: Sequence[_Statement]) -> dict[str,
         return found
     for name, direction in bound.network.crossing:
         if yield_column(name) in found:
-            found[yield_column(name)] = _WAYS[direction]
+            found[yield_column(name)] = crossing_bounds(direction)
     for reaction in bound.reactions:
         if flux_column(reaction.name) in found:
-            found[flux_column(reaction.name)] = FREE if reaction.reversible else _MADE
+            found[flux_column(reaction.name)] = flux_bounds(reaction.reversible)
     for carrier in bound.network.carriers:
         if surplus_column(carrier.name) in found:
-            found[surplus_column(carrier.name)] = _MADE
+            found[surplus_column(carrier.name)] = MADE
     return found
 
 
@@ -339,7 +333,7 @@ def _coefficient_statements(layers: Layers) -> list[_Statement]:
                 _Statement("written", label, rows={label: Bounds(value, value)}, compound=item.name)
             )
         if item.side is not Direction.EITHER and direction in (None, Direction.EITHER):
-            found.append(_Statement("side", item.name, {column: _WAYS[item.side]}))
+            found.append(_Statement("side", item.name, {column: crossing_bounds(item.side)}))
     return found
 
 
@@ -347,9 +341,8 @@ def _network_statements(layers: Layers, bound: BoundNetwork) -> list[_Statement]
     """Closed compounds, entries of strain and knock-outs, energy."""
     case = layers.case
     listed = {item.name for item in case.compounds}
-    shut = Bounds(_ZERO, _ZERO)
     found = [
-        _Statement("closed compound", name, {yield_column(name): shut})
+        _Statement("closed compound", name, {yield_column(name): SHUT})
         for name, _ in bound.network.crossing
         if name not in listed
     ]
@@ -358,7 +351,7 @@ def _network_statements(layers: Layers, bound: BoundNetwork) -> list[_Statement]
         _Statement(
             switch_kind(case, name),
             name,
-            {flux_column(member): shut for member in members if member in here},
+            {flux_column(member): SHUT for member in members if member in here},
         )
         for name, members in off_entries(case).items()
     ]

@@ -7,7 +7,7 @@ from fractions import Fraction
 from typing import TYPE_CHECKING
 
 from yieldnet.audit.flux import closed_network
-from yieldnet.optimum.problem import FREE, Bounds, Column, Matrix, Problem, Row
+from yieldnet.optimum.problem import FREE, MADE, SHUT, Bounds, Column, Matrix, Problem, Row
 from yieldnet.optimum.proof import Status
 from yieldnet.optimum.ranges import column_ranges
 from yieldnet.prediction.layers import flux_column
@@ -19,9 +19,7 @@ if TYPE_CHECKING:
 
 __all__ = ["FluxAnswer", "Fluxes", "find_fluxes", "least_fluxes"]
 
-_ZERO = Fraction(0)
 _ONE = Fraction(1)
-_MADE = Bounds(_ZERO, None)
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -91,9 +89,9 @@ def least_fluxes(optimiser: Optimiser, layers: Layers, best: Answer) -> dict[str
             continue
         label = f"size of {name}"
         at = len(columns)
-        columns.append(Column(name=label, bounds=_MADE))
+        columns.append(Column(name=label, bounds=MADE))
         for way in (_ONE, -_ONE):
-            rows.append(Row(name=f"{label} {way}", layer="", bounds=_MADE))
+            rows.append(Row(name=f"{label} {way}", layer="", bounds=MADE))
             entries.append(((at, _ONE), (place, way)))
         objective[label] = _ONE
     problem = Problem(
@@ -128,8 +126,7 @@ def find_fluxes(optimiser: Optimiser, layers: Layers, best: Answer) -> Fluxes:
     names = [
         item.name
         for item in layers.bound.reactions
-        if best.problem.columns[best.problem.column(flux_column(item.name))].bounds
-        != Bounds(_ZERO, _ZERO)
+        if best.problem.columns[best.problem.column(flux_column(item.name))].bounds != SHUT
     ]
     ranges = column_ranges(optimiser, face, [flux_column(name) for name in names], (best,))
     assert ranges is not None
@@ -146,8 +143,7 @@ def _loops(optimiser: Optimiser, layers: Layers, names: list[str]) -> tuple[tupl
     """Loops that turn with nothing crossing and no energy made or spent, each with least flux."""
     assert layers.bound is not None
     problem, backward = _one_way_loops(closed_network(layers.bound), frozenset(names))
-    size = {column.name: _ONE for column in problem.columns if column.bounds == _MADE}
-    shut = Bounds(_ZERO, _ZERO)
+    size = {column.name: _ONE for column in problem.columns if column.bounds == MADE}
     found: list[tuple[str, ...]] = []
     met: set[str] = set()
     for name in names:
@@ -155,7 +151,7 @@ def _loops(optimiser: Optimiser, layers: Layers, names: list[str]) -> tuple[tupl
             if name in met or not way:
                 continue
             other = backward.get(name, "") if way == name else name
-            turned = {way: Bounds(_ONE, _ONE), **({other: shut} if other else {})}
+            turned = {way: Bounds(_ONE, _ONE), **({other: SHUT} if other else {})}
             answer = optimiser.optimise(problem.with_columns(turned), size, maximise=False)
             if answer.status is Status.OPTIMAL:
                 loop = tuple(
@@ -177,14 +173,14 @@ def _one_way_loops(closed: Problem, allowed: frozenset[str]) -> tuple[Problem, d
     for j, column in enumerate(closed.columns):
         # Crossing compounds and surpluses are no reactions, so they are shut with the rest.
         inside = column.name in allowed
-        columns.append(Column(name=column.name, bounds=_MADE if inside else Bounds(_ZERO, _ZERO)))
+        columns.append(Column(name=column.name, bounds=MADE if inside else SHUT))
         if inside and column.bounds == FREE:
             reversible.append(j)
     for j in reversible:
         name = closed.columns[j].name
         backward[name] = f"{name} backwards"
         at = len(columns)
-        columns.append(Column(name=backward[name], bounds=_MADE))
+        columns.append(Column(name=backward[name], bounds=MADE))
         for row in entries:
             row += [(at, -value) for k, value in row if k == j]
     matrix = Matrix(tuple(tuple(row) for row in entries), len(columns))

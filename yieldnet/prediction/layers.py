@@ -21,7 +21,7 @@ from yieldnet.balance.statements import (
 from yieldnet.model.binding import composition
 from yieldnet.model.case import EnergySurplus
 from yieldnet.model.network import BIOMASS, CarrierKind
-from yieldnet.optimum.problem import FREE, Bounds, ProblemBuilder
+from yieldnet.optimum.problem import FREE, MADE, SHUT, Bounds, ProblemBuilder, flux_bounds
 
 if TYPE_CHECKING:
     from collections.abc import Mapping
@@ -48,8 +48,6 @@ __all__ = [
 RUNGS = ("elements", "measured", "demands", "pathways", "redox", "energy", "maintenance")
 """Rungs from the top of the ladder to its foot."""
 _ZERO = Fraction(0)
-_MADE = Bounds(_ZERO, None)
-_SHUT = Bounds(_ZERO, _ZERO)
 
 
 def flux_column(reaction: str) -> str:
@@ -246,12 +244,12 @@ def build_layers(
     listed = {case.basis.name, *(item.name for item in case.coefficients)}
     for name, _ in bound.network.crossing:
         if name not in listed:
-            builder.add_column(yield_column(name), _SHUT)
+            builder.add_column(yield_column(name), SHUT)
     off = switched_off(case)
     for reaction in bound.reactions:
-        open_bounds = FREE if reaction.reversible else _MADE
+        open_bounds = flux_bounds(reaction.reversible)
         builder.add_column(
-            flux_column(reaction.name), _SHUT if reaction.name in off else open_bounds
+            flux_column(reaction.name), SHUT if reaction.name in off else open_bounds
         )
     for name in energy:
         builder.add_column(surplus_column(name), FREE)
@@ -278,13 +276,13 @@ def build_layers(
     tightened: dict[str, tuple[Mapping[str, Bounds], Mapping[str, Bounds]]] = {}
     if redox:
         rungs.append("redox")
-        tightened["redox"] = ({exchange_column(item.name): _SHUT for item in redox}, {})
+        tightened["redox"] = ({exchange_column(item.name): SHUT for item in redox}, {})
     if energy:
         rungs.append("energy")
         exact = case.energy_surplus is EnergySurplus.NONE
         spent = maintenance.carrier if maintenance else None
         tightened["energy"] = (
-            {surplus_column(name): _SHUT if exact and name != spent else _MADE for name in energy},
+            {surplus_column(name): SHUT if exact and name != spent else MADE for name in energy},
             {},
         )
         if maintenance is not None:
@@ -322,7 +320,7 @@ def _add_balances(builder: ProblemBuilder, bound: BoundNetwork) -> None:
             layer[item.name] = "redox"
             sums.setdefault(item.name, {})[exchange_column(item.name)] = Fraction(1)
     for name, entries in sums.items():
-        builder.add_row(f"{name} balance", layer.get(name, "pathways"), _SHUT, entries)
+        builder.add_row(f"{name} balance", layer.get(name, "pathways"), SHUT, entries)
 
 
 def _add_exchange_rows(
@@ -334,6 +332,6 @@ def _add_exchange_rows(
         builder.add_row(
             f"{element} of exchanged carriers",
             "pathways",
-            _SHUT,
+            SHUT,
             {exchange_column(name): parts[element] for name, parts in redox if element in parts},
         )

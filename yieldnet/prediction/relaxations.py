@@ -14,7 +14,7 @@ from typing import TYPE_CHECKING
 from yieldnet.balance.statements import is_exact, kind_of, yield_column
 from yieldnet.model.case import EnergySurplus
 from yieldnet.model.network import GROWTH, CarrierKind, Direction
-from yieldnet.optimum.problem import FREE, Bounds
+from yieldnet.optimum.problem import FREE, MADE, SHUT, Bounds, crossing_bounds, flux_bounds
 from yieldnet.optimum.proof import Status
 from yieldnet.prediction.ladder import runaway_words
 from yieldnet.prediction.layers import (
@@ -37,12 +37,6 @@ if TYPE_CHECKING:
 __all__ = ["Candidate", "Relaxation", "RelaxationReport", "candidates_of", "relax"]
 
 _ZERO = Fraction(0)
-_MADE = Bounds(_ZERO, None)
-_WAYS = {
-    Direction.CONSUMED: Bounds(None, _ZERO),
-    Direction.PRODUCED: _MADE,
-    Direction.EITHER: FREE,
-}
 _CARBON_DIOXIDE = "carbon dioxide"
 
 
@@ -175,7 +169,7 @@ def candidates_of(layers: Layers) -> tuple[Candidate, ...]:
             Candidate(
                 "tightening",
                 "net carbon dioxide uptake forbidden",
-                {yield_column(_CARBON_DIOXIDE): _MADE},
+                {yield_column(_CARBON_DIOXIDE): MADE},
                 {},
                 "without net uptake of carbon dioxide",
             )
@@ -207,7 +201,7 @@ def _carrier_candidates(layers: Layers) -> list[Candidate]:
             Candidate(
                 "condition",
                 "energy surplus: none",
-                {surplus_column(name): _MADE for name in energy},
+                {surplus_column(name): MADE for name in energy},
                 {"maintenance": Bounds(need, None)} if maintenance else {},
                 "with spare energy lost",
             )
@@ -233,7 +227,7 @@ def _carrier_candidates(layers: Layers) -> list[Candidate]:
             Candidate(
                 "source",
                 ", ".join(redox),
-                {exchange_column(name): _MADE for name in redox},
+                {exchange_column(name): MADE for name in redox},
                 freed,
                 f"with a free source of {' and '.join(redox)}",
             )
@@ -245,7 +239,7 @@ def _switch_candidates(layers: Layers) -> list[Candidate]:
     bound = layers.bound
     assert bound is not None
     entries = off_entries(layers.case)
-    ways = {item.name: FREE if item.reversible else _MADE for item in bound.reactions}
+    ways = {item.name: flux_bounds(item.reversible) for item in bound.reactions}
     found = []
     for name, members in entries.items():
         elsewhere = {member for other, more in entries.items() if other != name for member in more}
@@ -276,7 +270,7 @@ def _crossing_candidates(layers: Layers) -> list[Candidate]:
         Candidate(
             "compound",
             name,
-            {yield_column(name): _WAYS[direction]},
+            {yield_column(name): crossing_bounds(direction)},
             {},
             f"with {name} {words[direction]}",
         )
@@ -396,13 +390,12 @@ class _Bench:
         """Whether something given back makes energy with nothing crossing the cell boundary."""
         bound = self.layers.bound
         assert bound is not None
-        shut = Bounds(_ZERO, _ZERO)
         statements = self.layers.statements
         problem = self.best.problem
         for candidate in candidates:
             problem = candidate.applied(problem)
         problem = problem.with_columns(
-            {yield_column(name): shut for name, _ in bound.network.crossing}
+            {yield_column(name): SHUT for name, _ in bound.network.crossing}
         ).with_rows(
             dict.fromkeys(
                 (
@@ -466,7 +459,7 @@ class _Bench:
         problem = answer.optimal_face()
         used = []
         for column in reversed(list(part.columns)):
-            spared = problem.with_columns({column: Bounds(_ZERO, _ZERO)})
+            spared = problem.with_columns({column: SHUT})
             if self.optimiser.optimise(spared, {}).status is Status.INFEASIBLE:
                 used.append(column.removeprefix(prefix))
             else:

@@ -23,7 +23,7 @@ from yieldnet.balance.elements import element_matrix
 from yieldnet.balance.statements import yield_column
 from yieldnet.model.binding import composition
 from yieldnet.model.network import CarrierKind
-from yieldnet.optimum.problem import FREE, Bounds, Column, Matrix, Problem, Row
+from yieldnet.optimum.problem import FREE, SHUT, Bounds, Column, Matrix, Problem, Row
 from yieldnet.optimum.proof import Status
 from yieldnet.prediction.layers import exchange_column
 
@@ -37,7 +37,6 @@ if TYPE_CHECKING:
 __all__ = ["LayerShare", "Shares", "find_shares", "ladder_in_order"]
 
 _ZERO = Fraction(0)
-_SHUT = Bounds(_ZERO, _ZERO)
 
 
 @dataclass(frozen=True, slots=True)
@@ -97,7 +96,7 @@ class _Coalitions:
         columns: dict[str, Bounds] = {}
         rows: dict[str, Bounds] = {}
         for layer, names in self.freed.items():
-            columns.update(dict.fromkeys(names, _SHUT if layer in present else FREE))
+            columns.update(dict.fromkeys(names, SHUT if layer in present else FREE))
         if "measured" in present:
             for item in statements.measured:
                 value = self.point[item.compound]
@@ -177,7 +176,7 @@ def _with_free_layers(layers: Layers) -> tuple[Problem, dict[str, tuple[str, ...
     for i in exchange_rows:
         rows[i] = Row(name=rows[i].name, layer=rows[i].layer, bounds=FREE)
     for element, line_entries in conserved.items():
-        rows.append(Row(name=f"{element} of all that is freed", layer="pathways", bounds=_SHUT))
+        rows.append(Row(name=f"{element} of all that is freed", layer="pathways", bounds=SHUT))
         entries.append(line_entries)
     matrix = Matrix(tuple(tuple(row) for row in entries), len(columns))
     return (

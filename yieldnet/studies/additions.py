@@ -17,7 +17,7 @@ from yieldnet.foundation.errors import InputError
 from yieldnet.foundation.findings import Findings, Severity
 from yieldnet.model.case import AimDirection, Named
 from yieldnet.model.network import CarrierKind
-from yieldnet.optimum.problem import FREE, Bounds
+from yieldnet.optimum.problem import SHUT, Bounds, flux_bounds
 from yieldnet.optimum.proof import Status
 from yieldnet.prediction.ladder import climb_down, runaway_words
 from yieldnet.prediction.layers import build_layers, flux_column, switched_off
@@ -50,8 +50,6 @@ TOP = 5
 PAIRS_WITH_LADDER = 20
 """Best pairs for which the rungs they relieve are looked for [-]."""
 _ZERO = Fraction(0)
-_SHUT = Bounds(_ZERO, _ZERO)
-_ONWARD = Bounds(_ZERO, None)
 
 
 def add_candidates(
@@ -159,9 +157,7 @@ class _Bench:
         self.optimiser = setting.optimiser
         self.objective: Objective = ready.objective
         self.point: Mapping[str, Fraction] = ready.point
-        self.ways = {
-            item.name: FREE if item.reversible else _ONWARD for item in merged.bound.reactions
-        }
+        self.ways = {item.name: flux_bounds(item.reversible) for item in merged.bound.reactions}
         names = [name for idea in merged.ideas for name in idea.reactions]
         case = replace(
             setting.case,
@@ -183,7 +179,7 @@ class _Bench:
         )
         off = frozenset(switched_off(setting.case))
         self.closed = closed_network(merged.bound.without(off)).with_columns(
-            dict.fromkeys(names, _SHUT)
+            dict.fromkeys(names, SHUT)
         )
         self.energy = [
             item.name for item in merged.bound.network.carriers if item.kind is CarrierKind.ENERGY
@@ -337,7 +333,7 @@ def _with_deletions(
         for name in setting.candidates():
             if name not in before.used:
                 continue
-            shut = {flux_column(name): _SHUT}
+            shut = {flux_column(name): SHUT}
             after = _guarantee(setting, problem.with_columns(shut))
             if after.value is None or after.value <= (before.value or _ZERO):
                 continue

@@ -7,7 +7,7 @@ from enum import StrEnum
 from fractions import Fraction
 from typing import TYPE_CHECKING
 
-from yieldnet.optimum.problem import Bounds
+from yieldnet.optimum.problem import SHUT, Bounds
 from yieldnet.optimum.proof import Status
 
 if TYPE_CHECKING:
@@ -115,7 +115,7 @@ def _coupling(
         return Coupling.NONE
     # The least product per biomass over all growth: convex, so its infimum is the slope at no
     # growth where the least product starts at zero. Scale so that biomass is the basis.
-    standing = problem.with_columns({setting.biomass_column: Bounds(Fraction(0), Fraction(0))})
+    standing = problem.with_columns({setting.biomass_column: SHUT})
     product = setting.product_objective()
     least = setting.optimiser.optimise(standing, product, maximise=False)
     if least.status is Status.INFEASIBLE or (least.status is Status.OPTIMAL and least.value > 0):

@@ -17,7 +17,7 @@ from typing import TYPE_CHECKING
 from yieldnet.foundation.errors import SolveError
 from yieldnet.optimum.fast import FEASIBILITY, FastProblem, FastStatus
 from yieldnet.optimum.hitting_sets import HittingSets
-from yieldnet.optimum.problem import Bounds
+from yieldnet.optimum.problem import SHUT, Bounds
 from yieldnet.optimum.proof import Status
 from yieldnet.prediction.layers import flux_column
 from yieldnet.studies.behaviour import Behaviour, behaviour
@@ -275,10 +275,9 @@ class _Search:
 
     def without(self, places: frozenset[int]) -> Problem:
         """The problem at the stated growth or more, some things knocked out."""
-        shut = Bounds(Fraction(0), Fraction(0))
         return self.grown.with_columns(
             {
-                self.grown.columns[column].name: shut
+                self.grown.columns[column].name: SHUT
                 for place in places
                 for column in self.things.columns[place]
             }
@@ -431,10 +430,9 @@ class _Search:
 
     def _described(self, places: frozenset[int], forced: Fraction) -> CoupledSet:
         members = [self.things.names[place] for place in sorted(places)]
-        shut = Bounds(Fraction(0), Fraction(0))
         problem = self.setting.problem.with_columns(
             {
-                self.grown.columns[column].name: shut
+                self.grown.columns[column].name: SHUT
                 for place in places
                 for column in self.things.columns[place]
             }

@@ -12,12 +12,13 @@ from itertools import combinations
 from typing import TYPE_CHECKING
 
 from yieldnet.optimum.fast import FEASIBILITY, FastStatus
+from yieldnet.optimum.problem import SHUT
 
 if TYPE_CHECKING:
     from collections.abc import Callable, Iterator, Sequence
 
     from yieldnet.optimum.fast import FastProblem
-    from yieldnet.optimum.problem import Bounds, Problem
+    from yieldnet.optimum.problem import Problem
 
 __all__ = ["ACTIVE", "Deletion", "DeletionRun", "delete_all", "linear_chains"]
 
@@ -144,25 +145,14 @@ def linear_chains(problem: Problem, columns: Sequence[int]) -> list[int]:
     for row, entries in zip(problem.rows, problem.matrix.rows, strict=True):
         if row.bounds.low != 0 or row.bounds.high != 0:
             continue
-        open_entries = [j for j, _ in entries if not _shut(problem.columns[j].bounds)]
+        open_entries = [j for j, _ in entries if problem.columns[j].bounds != SHUT]
         if len(open_entries) != 2 or not all(j in place for j in open_entries):
             continue
-        if any(_is_forced(_as_floats(problem.columns[j].bounds)) for j in open_entries):
+        if any(_is_forced(problem.columns[j].bounds.as_floats()) for j in open_entries):
             continue
         one, other = sorted(root(place[j]) for j in open_entries)
         parent[other] = one
     return [root(at) for at in range(len(columns))]
-
-
-def _shut(bounds: Bounds) -> bool:
-    return bounds.low == 0 and bounds.high == 0
-
-
-def _as_floats(bounds: Bounds) -> tuple[float | None, float | None]:
-    return (
-        None if bounds.low is None else float(bounds.low),
-        None if bounds.high is None else float(bounds.high),
-    )
 
 
 def delete_all(

@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING
 from yieldnet.balance.statements import with_point
 from yieldnet.foundation.errors import InputError
 from yieldnet.foundation.findings import Findings, Severity, near
-from yieldnet.optimum.problem import Bounds
+from yieldnet.optimum.problem import SHUT
 from yieldnet.optimum.proof import Status
 from yieldnet.prediction.ladder import LadderRung, objective_of
 from yieldnet.prediction.layers import flux_column, switched_off
@@ -29,7 +29,6 @@ __all__ = ["KNOCK_OUTS", "KnockOutResult", "check_names", "knock_out"]
 
 KNOCK_OUTS = "knock-outs"
 """Name of the rung that the idea under test adds to the ladder."""
-_ZERO = Fraction(0)
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -158,7 +157,7 @@ def _rung(setting: Setting, members: set[str], last: Fraction | None) -> LadderR
     objective = objective_of(setting.case)
     assert objective is not None
     assert ready.point is not None
-    shut = {flux_column(name): Bounds(_ZERO, _ZERO) for name in members}
+    shut = {flux_column(name): SHUT for name in members}
     problem = with_point(ready.layers.final, ready.layers.statements, ready.point)
     answer = objective.best(setting.optimiser, problem.with_columns(shut))
     if answer.status is not Status.OPTIMAL:

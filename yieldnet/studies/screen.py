@@ -242,14 +242,11 @@ def screen_case(
     things, chains = _things(setting, groups)
     fast = FastProblem(setting.problem)
     least = growth_share * float(host.most_biomass or 0)
-    bounds = [
-        tuple(None if end is None else float(end) for end in (item.bounds.low, item.bounds.high))
-        for item in setting.problem.columns
-    ]
+    bounds = [item.bounds.as_floats() for item in setting.problem.columns]
     run = DeletionRun(
         problem=fast,
         groups=[columns for _, columns in things],
-        bounds=bounds,  # type: ignore[arg-type]
+        bounds=bounds,
         evaluate=_Evaluator(setting, fast, score, least),
     )
     total = sum(comb(len(things), size) for size in range(depth + 1))
@@ -396,13 +393,7 @@ def _essential(setting: Setting, things: list[Thing]) -> tuple[str, ...]:
     """Things without which there is no growth, or no uptake of the basis."""
     fast = FastProblem(setting.problem)
     fast.aim({setting.problem.column(setting.biomass_column): 1.0})
-    bounds = [
-        (
-            None if item.bounds.low is None else float(item.bounds.low),
-            None if item.bounds.high is None else float(item.bounds.high),
-        )
-        for item in setting.problem.columns
-    ]
+    bounds = [item.bounds.as_floats() for item in setting.problem.columns]
     run = DeletionRun(problem=fast, groups=[columns for _, columns in things], bounds=bounds)
     return tuple(
         things[item.members[0]][0]

@@ -15,7 +15,7 @@ from yieldnet.foundation.errors import InputError
 from yieldnet.foundation.findings import Findings
 from yieldnet.model.network import BIOMASS
 from yieldnet.optimum.engine import engine_named
-from yieldnet.optimum.problem import FREE, Bounds
+from yieldnet.optimum.problem import FREE, SHUT
 from yieldnet.optimum.proof import Optimiser
 from yieldnet.prediction.layers import flux_column
 from yieldnet.prediction.prepare import prepare
@@ -98,8 +98,7 @@ class Setting:
 
     def without(self, reactions: Iterable[str]) -> Problem:
         """The problem with reactions switched off as well."""
-        shut = Bounds(Fraction(0), Fraction(0))
-        return self.problem.with_columns({flux_column(name): shut for name in reactions})
+        return self.problem.with_columns({flux_column(name): SHUT for name in reactions})
 
 
 def set_up(case: Case, engine: str = "glpk", freed: Iterable[str] = (BIOMASS,)) -> Setting:

@@ -18,7 +18,7 @@ from yieldnet.foundation.findings import Findings, near
 from yieldnet.model.case import Aim, AimDirection
 from yieldnet.model.network import BIOMASS
 from yieldnet.optimum.polygon import Axis, Point, project
-from yieldnet.optimum.problem import Bounds
+from yieldnet.optimum.problem import SHUT, Bounds
 from yieldnet.optimum.ranges import column_ranges
 from yieldnet.prediction.coefficients import own_side
 from yieldnet.studies.setting import set_up
@@ -44,7 +44,6 @@ __all__ = [
     "trade_off",
 ]
 
-_ZERO = Fraction(0)
 OVER = {"growth-rate": BIOMASS, "oxygen": "oxygen"}
 """Axes that have a name of their own, with the coefficient that each shows."""
 
@@ -391,7 +390,7 @@ def _turns(
 
     # Nothing lies beyond an edge, so its points are the optimal ones of its outward normal.
     rim = setting.optimiser.optimise(setting.problem, objective(along[1], -along[0]))
-    zero = rim.optimal_face().with_columns({yield_column(compound): Bounds(_ZERO, _ZERO)})
+    zero = rim.optimal_face().with_columns({yield_column(compound): SHUT})
     ends = (setting.optimiser.optimise(zero, objective(*along), most) for most in (False, True))
     return tuple(
         (end[axes[0].column] * axes[0].factor, end[axes[1].column] * axes[1].factor) for end in ends
