@@ -1,0 +1,1 @@
+"""From a cultivation run to rates and yields with their covariance."""
