@@ -25,6 +25,7 @@ __all__ = [
     "Formula",
     "FormulaTextError",
     "NitrogenReference",
+    "electron_valences",
     "read_formula",
 ]
 
@@ -49,6 +50,31 @@ class FormulaTextError(TextError):
     """A text that is not a usable formula."""
 
     usual_code = "YN204"
+
+
+def electron_valences(
+    nitrogen: NitrogenReference = "ammonia", sulphur: str = "sulfate"
+) -> dict[str, int]:
+    """Available electrons of one mol of each element: see :meth:`Formula.degree_of_reduction`.
+
+    Parameters
+    ----------
+    nitrogen : {"ammonia", "nitrogen", "nitrate"}
+        Nitrogen source that counts as zero.
+    sulphur : {"sulfate", "sulfide"}
+        Sulphur source that counts as zero.
+
+    Returns
+    -------
+    dict of str to int
+        By element; an element without an agreed valence is not in it [mol/mol].
+
+    Examples
+    --------
+    >>> electron_valences("nitrate")["N"]
+    5
+    """
+    return {**_VALENCE, "N": _NITROGEN[nitrogen], "S": _SULPHUR[sulphur]}
 
 
 @dataclass(frozen=True, slots=True)
@@ -133,7 +159,7 @@ class Formula:
         >>> read_formula("CH1.8O0.5N0.2").degree_of_reduction("nitrate")
         Fraction(29, 5)
         """
-        valence = {**_VALENCE, "N": _NITROGEN[nitrogen], "S": _SULPHUR[sulphur]}
+        valence = electron_valences(nitrogen, sulphur)
         total = Fraction(-self.charge)
         for symbol, amount in self.elements:
             if symbol not in valence:
