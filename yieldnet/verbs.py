@@ -12,9 +12,19 @@ if TYPE_CHECKING:
     from fractions import Fraction
 
     from yieldnet.audit.audit import AuditResult
+    from yieldnet.chemistry.macromolecules import BiomassComposition
+    from yieldnet.foundation.findings import Finding
     from yieldnet.model.case import Case
+    from yieldnet.model.cultivation import Cultivation
     from yieldnet.model.network import Network
+    from yieldnet.model.reproduction import Reproduction
+    from yieldnet.plant.sheet import PlantSheet
+    from yieldnet.prediction.energetics import Energetics
+    from yieldnet.prediction.growth import GrowthCurve
+    from yieldnet.prediction.reconciliation import Reconciliation
+    from yieldnet.prediction.reproduce import Reproduced
     from yieldnet.prediction.result import Prediction
+    from yieldnet.rates.result import RateResult
     from yieldnet.studies.addition_result import AdditionResult
     from yieldnet.studies.coupling import CouplingDesign
     from yieldnet.studies.knockout import KnockOutResult
@@ -27,12 +37,20 @@ __all__ = [
     "additions",
     "audit",
     "balance",
+    "biomass_from",
     "couple",
+    "energetics",
     "explain",
+    "growth",
     "knockout",
+    "plant",
     "predict",
+    "rates",
     "read_case",
     "read_network",
+    "read_run",
+    "reconcile",
+    "reproduce",
     "schema",
     "screen",
     "tradeoff",
@@ -93,10 +111,19 @@ def read_network(path: Path) -> Network:
     >>> read_network("lysine-coryneform").title
     'Coryneform lysine former on glucose'
     """
+    from yieldnet.reading.network_file import load_network
+
+    network, findings = load_network(_network_path(path))
+    if network is None:
+        raise InputError(findings.sorted())
+    return network
+
+
+def _network_path(path: Path) -> str:
+    """Path of a network file, or of a shipped network by its name."""
     from pathlib import Path
 
     from yieldnet.foundation.findings import Finding, near
-    from yieldnet.reading.network_file import load_network
     from yieldnet.reading.shipped import find_shipped, shipped_names
 
     name = os.fspath(path)
@@ -105,10 +132,67 @@ def read_network(path: Path) -> Network:
         hint = near(name, known) or f"Shipped networks: {', '.join(known)}."
         message = f"network {name!r} is neither a file nor a shipped network"
         raise InputError([Finding(code="YN513", message=message, hint=hint)])
-    network, findings = load_network(str(find_shipped(name) or name))
-    if network is None:
+    return str(find_shipped(name) or name)
+
+
+def read_reproducing_network(path: Path) -> tuple[Network, tuple[Reproduction, ...]]:
+    """Network of a file, or a shipped one by its name, with the values it says it gives again.
+
+    Parameters
+    ----------
+    path : str or path
+        Path of the network file, or the name of a shipped network.
+
+    Returns
+    -------
+    Network
+        The network as written.
+    tuple of Reproduction
+        Entries of ``reproduces``, in written order.
+
+    Raises
+    ------
+    InputError
+        If anything in the file is wrong; carries all findings.
+    """
+    from yieldnet.reading.reproductions import load_reproducing_network
+
+    network, reproductions, findings = load_reproducing_network(_network_path(path))
+    if network is None or findings.refused:
         raise InputError(findings.sorted())
-    return network
+    return network, reproductions
+
+
+def read_run(path: Path) -> Cultivation:
+    """Cultivation of a run file, with its sheet.
+
+    Parameters
+    ----------
+    path : str or path
+        Path of the run file.
+
+    Returns
+    -------
+    Cultivation
+        Everything that was measured, in h, L, mol, g dry weight, K and kPa.
+
+    Raises
+    ------
+    InputError
+        If anything in the file or its sheet is wrong; carries all findings.
+
+    Examples
+    --------
+    >>> run = read_run("examples/batch/run.yaml")
+    >>> run.kind.value, run.broth[0].compound
+    ('batch', 'biomass')
+    """
+    from yieldnet.reading.run_file import load_run
+
+    run, findings = load_run(os.fspath(path))
+    if run is None:
+        raise InputError(findings.sorted())
+    return run
 
 
 def predict(
@@ -118,6 +202,7 @@ def predict(
     fluxes: bool = False,
     proof: bool = False,
     order: Sequence[str] = (),
+    level: float = 0.95,
 ) -> Prediction:
     """Yield coefficients of a case by elements and by network, side by side.
 
@@ -133,6 +218,8 @@ def predict(
         Whether the answer holds the proof on paper.
     order : sequence of str
         Another order of the rungs below ``elements``, for a second ladder; empty for none.
+    level : float
+        Probability with which the test of the measured values passes correct ones [-].
 
     Returns
     -------
@@ -152,11 +239,11 @@ def predict(
     """
     from yieldnet.prediction.predict import Wanted, predict_case
 
-    wanted = Wanted(fluxes=fluxes, proof=proof, order=tuple(order))
+    wanted = Wanted(fluxes=fluxes, proof=proof, order=tuple(order), level=level)
     return predict_case(_as_case(case), engine, wanted)
 
 
-def balance(case: Case | Path, *, engine: str = "glpk") -> Prediction:
+def balance(case: Case | Path, *, engine: str = "glpk", level: float = 0.95) -> Prediction:
     """Yield coefficients of a case by elements alone.
 
     Parameters
@@ -165,6 +252,8 @@ def balance(case: Case | Path, *, engine: str = "glpk") -> Prediction:
         The question, or the path of its file; its network is left out.
     engine : {"glpk", "optlang"}
         Solver whose answer is proven in fractions.
+    level : float
+        Probability with which the test of the measured values passes correct ones [-].
 
     Returns
     -------
@@ -183,7 +272,7 @@ def balance(case: Case | Path, *, engine: str = "glpk") -> Prediction:
     """
     from yieldnet.prediction.predict import balance_case
 
-    return balance_case(_as_case(case), engine)
+    return balance_case(_as_case(case), engine, level)
 
 
 def audit(network: Network | Path, *, engine: str = "glpk") -> AuditResult:
@@ -211,11 +300,54 @@ def audit(network: Network | Path, *, engine: str = "glpk") -> AuditResult:
     >>> audit("lysine-coryneform").clean
     True
     """
-    from yieldnet.audit.audit import audit_network
-    from yieldnet.model.network import Network
+    from dataclasses import replace
 
-    written = network if isinstance(network, Network) else read_network(network)
-    return audit_network(written, engine)
+    from yieldnet.audit.audit import audit_network
+    from yieldnet.foundation.findings import Findings
+    from yieldnet.model.network import Network
+    from yieldnet.reading.reproductions import load_reproducing_network
+
+    if isinstance(network, Network):
+        return audit_network(network, engine)
+    written, _, doubts = load_reproducing_network(_network_path(network))
+    if written is None:
+        raise InputError(doubts.sorted())
+    result = audit_network(written, engine)
+    findings = Findings(list(doubts))
+    findings.extend(result.findings)
+    return replace(result, findings=findings.sorted())
+
+
+def reproduce(network: Path, *, engine: str = "glpk") -> tuple[Reproduced, ...]:
+    """Whether a network still gives the values that its file says it reproduces.
+
+    Parameters
+    ----------
+    network : str or path
+        Path of the network file, or the name of a shipped network.
+    engine : {"glpk", "optlang"}
+        Solver whose answer is proven in fractions.
+
+    Returns
+    -------
+    tuple of Reproduced
+        Expected and found value of each entry [its own unit], and whether they agree; infeasible
+        and unbounded are told.
+
+    Raises
+    ------
+    InputError
+        If the file, or a case in it, must be refused; carries all findings.
+
+    Examples
+    --------
+    >>> all(item.agrees for item in reproduce("lysine-coryneform"))
+    True
+    """
+    from yieldnet.prediction.reproduce import reproduce_all
+
+    _, reproductions = read_reproducing_network(network)
+    return reproduce_all(reproductions, engine)
 
 
 def explain(word: str) -> str:
@@ -249,6 +381,214 @@ def explain(word: str) -> str:
             return meaning
     entry = CATALOGUE[word.upper()]
     return f"{entry.title}. {entry.why} {entry.way_out}"
+
+
+def rates(run: Cultivation | Path) -> RateResult:
+    """Rates and yields of a cultivation run, with their full covariance.
+
+    Parameters
+    ----------
+    run : Cultivation or path
+        The run, or the path of its file.
+
+    Returns
+    -------
+    RateResult
+        For each state growth rate [1/h], specific rates [mol/g/h], volumetric rates [mol/L/h] and
+        yields [mol/mol basis].
+
+    Raises
+    ------
+    InputError
+        If the files must be refused, or rates cannot be found; carries all findings.
+
+    Examples
+    --------
+    >>> state = rates("examples/batch/run.yaml").states[0]
+    >>> state.products
+    ('biomass', 'succinate', 'formate', 'acetate', 'ethanol')
+    """
+    from yieldnet.model.cultivation import Cultivation
+    from yieldnet.rates.rates import find_rates
+
+    return find_rates(run if isinstance(run, Cultivation) else read_run(run))
+
+
+def reconcile(
+    case: Case | Path,
+    *,
+    elements: bool = False,
+    level: float = 0.95,
+    of: str = "",
+    precision: float | Fraction = 0.05,
+    draws: int = 400,
+    engine: str = "glpk",
+    tick: Callable[[int, int], None] | None = None,
+) -> Reconciliation:
+    """What the balances say of the measured values of a case, and what to measure next.
+
+    Parameters
+    ----------
+    case : Case or path
+        The question with its measured values, or the path of its file.
+    elements : bool
+        Whether the network of the case is left out.
+    level : float
+        Probability with which the test of the measured values passes correct ones [-].
+    of : str
+        Coefficient whose range the next measurement is to narrow; the aim if empty.
+    precision : float or Fraction
+        Standard deviation of the next measurement, as a share of its value [-].
+    draws : int
+        Sets of values drawn where there is no closed form [-].
+    engine : {"glpk", "optlang"}
+        Solver whose answers are proven in fractions.
+    tick : callable, optional
+        Called with the sets drawn and the sets in all.
+
+    Returns
+    -------
+    Reconciliation
+        Tests, suspects, reconciled and calculated values [mol/mol basis].
+
+    Raises
+    ------
+    InputError
+        If the files must be refused, nothing is measured, or ``of`` is not in the equation.
+    ValueError
+        If the level or the precision is no share between 0 and 1, or fewer than two sets are
+        drawn.
+
+    Examples
+    --------
+    >>> result = reconcile("examples/succinate-from-xylose/case.yaml")
+    >>> result.failed is None, result.next[0].compound
+    (True, 'carbon dioxide')
+    """
+    from fractions import Fraction
+
+    from yieldnet.prediction.reconcile import reconcile_case
+
+    return reconcile_case(
+        _as_case(case),
+        network=not elements,
+        level=level,
+        of=of,
+        precision=Fraction(str(precision)),
+        draws=draws,
+        engine=engine,
+        tick=tick,
+    )
+
+
+def energetics(case: Case | Path, *, engine: str = "glpk") -> Energetics:
+    """Heat and Gibbs energy of the predicted overall equation of a case.
+
+    Parameters
+    ----------
+    case : Case or path
+        The question, or the path of its file.
+    engine : {"glpk", "optlang"}
+        Solver whose answer is proven in fractions.
+
+    Returns
+    -------
+    Energetics
+        Closure, heat and Gibbs energy [kJ/mol basis], biomass yields [C-mol/mol basis]; what cannot
+        be told is ``None`` with a finding.
+
+    Raises
+    ------
+    InputError
+        If the files must be refused; carries all findings.
+
+    Examples
+    --------
+    >>> result = energetics("examples/energetics/case.yaml")
+    >>> [item.closes for item in result.closures], result.heat.oxygen > 0
+    ([True, True], True)
+    """
+    from yieldnet.prediction.energetics import energetics_case
+
+    return energetics_case(_as_case(case), engine)
+
+
+def growth(
+    case: Case | Path, *, rates: Sequence[Fraction | float] = (), engine: str = "glpk"
+) -> GrowthCurve:
+    """Most biomass of a case at a series of growth rates, with true yield and maintenance.
+
+    Parameters
+    ----------
+    case : Case or path
+        The question, or the path of its file; its aim, growth rate and uptake are set aside.
+    rates : sequence of Fraction or float
+        Growth rates; a series round that of the case if empty [1/h].
+    engine : {"glpk", "optlang"}
+        Solver whose answers are proven in fractions.
+
+    Returns
+    -------
+    GrowthCurve
+        Yields [mol/mol basis], straight pieces, yields on ATP [g/mol].
+
+    Raises
+    ------
+    InputError
+        If the files must be refused or the case does not grow; carries all findings.
+    ValueError
+        If a growth rate is not above zero.
+
+    Examples
+    --------
+    >>> curve = growth("examples/succinate-from-xylose/case.yaml", rates=[0.08])
+    >>> round(float(curve.points[0].y_atp), 2)
+    9.69
+    """
+    from fractions import Fraction
+
+    from yieldnet.prediction.growth import grow_case
+
+    wanted = [Fraction(str(rate)) for rate in rates]
+    return grow_case(_as_case(case), wanted, engine)
+
+
+def biomass_from(
+    line: str, *, monomers: str = "Escherichia coli", normalise: bool = False
+) -> BiomassComposition:
+    """Biomass put together from the shares of its macromolecules.
+
+    Parameters
+    ----------
+    line : str
+        Macromolecules with their shares of the dry weight, comma between, and ash [g/g].
+    monomers : str
+        Organism whose monomers are taken.
+    normalise : bool
+        Whether all shares are divided by their sum.
+
+    Returns
+    -------
+    BiomassComposition
+        Formula per mol of carbon and all that follows from it [mol/C-mol].
+
+    Raises
+    ------
+    InputError
+        If the line is not understood, or does not sum to 1; carries all findings.
+
+    Examples
+    --------
+    >>> cell = biomass_from("protein 0.52, RNA 0.16, DNA 0.03, lipid 0.09, glycogen 0.15, ash 0.05")
+    >>> round(float(cell.degree_of_reduction), 2)
+    4.16
+    """
+    from yieldnet.reading.composition import read_composition_line
+
+    composed, findings = read_composition_line(line, monomers, normalise=normalise)
+    if composed is None:
+        raise InputError(findings.sorted())
+    return composed.composition
 
 
 def schema(file: str) -> dict[str, Any]:
@@ -542,6 +882,55 @@ def couple(
         groups=groups,
         engine=engine,
     )
+
+
+def plant(
+    cases: Case | Path | Sequence[Case | Path], *, engine: str = "glpk"
+) -> tuple[PlantSheet, ...]:
+    """Plant sheet of each case: streams, base, oxygen, heat, vessels, raw materials.
+
+    Parameters
+    ----------
+    cases : Case or path, or sequence of them
+        Questions with a section ``plant``, or the paths of their files.
+    engine : {"glpk", "optlang"}
+        Solver whose answers are proven in fractions.
+
+    Returns
+    -------
+    tuple of PlantSheet
+        One sheet a case, streams in kg/h and t/y; every figure with unit, formula and inputs.
+
+    Raises
+    ------
+    InputError
+        If the files must be refused, no sheet can be made, or two cases have prices in different
+        currencies; carries all findings of all cases.
+    ValueError
+        If there is no case.
+
+    Examples
+    --------
+    >>> (sheet,) = plant("examples/plant/case.yaml")
+    >>> round(float(sheet.stream("glucose").t_per_y))
+    23650
+    """
+    from yieldnet.model.case import Case
+    from yieldnet.plant.plant import plant_cases
+
+    several = [cases] if isinstance(cases, Case | str | os.PathLike) else cases
+    if not several:
+        raise ValueError("there is no case")
+    read: list[Case] = []
+    refused: list[Finding] = []
+    for case in several:
+        try:
+            read.append(_as_case(case))
+        except InputError as error:
+            refused.extend(error.findings)
+    if refused:
+        raise InputError(refused)
+    return plant_cases(read, engine)
 
 
 def _as_case(case: Case | Path) -> Case:

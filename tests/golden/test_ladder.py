@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING
 import pytest
 
 import yieldnet
-from yieldnet.balance.reconciled import pool
+from yieldnet.balance.covariance import pool
 from yieldnet.balance.statements import statements_of
 
 if TYPE_CHECKING:

@@ -1,17 +1,23 @@
-"""The reconciled point: against another method in floats, and its own conditions in fractions."""
+"""The reconciled point: against another method in floats, and its own conditions in fractions.
+
+Each with independent errors and with correlated ones.
+"""
 
 from __future__ import annotations
 
+from dataclasses import replace
 from fractions import Fraction
+from random import Random
 from typing import TYPE_CHECKING
 
 import pytest
 from hypothesis import assume, given, settings
+from hypothesis import strategies as st
 
 from tests.property.answers import build
 from tests.property.cases import cases, random_case
 from tests.property.lps import assert_proven
-from yieldnet.balance.reconciled import pool
+from tests.property.measured_sets import random_correlations
 from yieldnet.balance.statements import band, side_sign, with_bands, with_point, yield_column
 from yieldnet.foundation.exact import eliminate
 from yieldnet.optimum.proof import Status
@@ -114,7 +120,7 @@ def _by_least_distance(built: Built) -> dict[str, float]:
                 line[k] -= value * pivots[j][k]
         return [float(value) for value in line.values()]
 
-    targets = pool(statements.measured)
+    targets = statements.pooled()
     columns = [problem.column(yield_column(name)) for name in targets]
     signs = [_sign(case, name) for name in targets]
     at_inner = [sign * inner[j] for sign, j in zip(signs, columns, strict=True)]
@@ -127,15 +133,14 @@ def _by_least_distance(built: Built) -> dict[str, float]:
                     lines.append([sign * value for value in line])
                     room.append(float(sign * (_value(form, inner) - end)))
         pulls = np.array([changes({j: Fraction(s)}) for s, j in zip(signs, columns, strict=True)])
-        roots = np.array([float(target.weight) ** 0.5 for target in targets.values()])
+        weights = np.array([[float(value) for value in row] for row in targets.precision()])
+        root = np.linalg.cholesky(weights).T
         short = np.array(
-            [float(x - target.value) for x, target in zip(at_inner, targets.values(), strict=True)]
+            [float(x - value) for x, value in zip(at_inner, targets.values, strict=True)]
         )
         count = len(loose)
-        factor, triangle = qr(
-            np.vstack([roots[:, None] * pulls, RIDGE * np.eye(count)]), mode="economic"
-        )
-        shift = factor.T @ np.concatenate([roots * short, np.zeros(count)])
+        factor, triangle = qr(np.vstack([root @ pulls, RIDGE * np.eye(count)]), mode="economic")
+        shift = factor.T @ np.concatenate([root @ short, np.zeros(count)])
         rows = solve_triangular(triangle, np.array(lines).T, trans="T").T
         system = np.vstack([rows.T, rows @ shift - np.array(room)]) / np.linalg.norm(rows, axis=1)
         aim = np.append(np.zeros(count), 1.0)
@@ -147,21 +152,30 @@ def _by_least_distance(built: Built) -> dict[str, float]:
     }
 
 
-@given(cases())
+def _correlated(case: Case, seed: int) -> Case:
+    """The case with random correlations between all its measured values that have errors."""
+    names = [item.compound for item in case.measured if item.sd]
+    return replace(case, correlations=random_correlations(Random(f"pairs {seed}"), names))
+
+
+correlated_cases = st.builds(_correlated, cases(), st.integers(0, 10**6))
+
+
+@given(cases() | correlated_cases)
 @settings(max_examples=200)
 def test_the_point_is_where_another_method_ends(case: Case) -> None:
     built = build(case)
     assume(built.point is not None)
     assert built.point is not None
-    targets = pool(built.layers.statements.measured)
-    assume(targets)
+    targets = built.layers.statements.pooled()
+    assume(len(targets))
     for name, value in _by_least_distance(built).items():
         deviation = float(targets[name].variance) ** 0.5
         assert value == pytest.approx(float(built.point[name]), abs=IN_DEVIATIONS * deviation)
 
 
-@given(cases())
-@settings(max_examples=100)
+@given(cases() | correlated_cases)
+@settings(max_examples=200)
 def test_the_point_satisfies_its_conditions_exactly(case: Case) -> None:
     """Inside every band and on every balance; and no feasible point lies down the gradient there.
 
@@ -183,23 +197,30 @@ def test_the_point_satisfies_its_conditions_exactly(case: Case) -> None:
         assert limits.low <= built.point[item.compound] <= limits.high
     there = built.optimiser.optimise(with_point(banded, statements, built.point), {})
     assert_proven(there)
+    targets = statements.pooled()
+    offsets = [built.point[name] - target.value for name, target in targets.items()]
     gradient = {
         yield_column(name): 2
-        * target.weight
         * _sign(case, name)
-        * (built.point[name] - target.value)
-        for name, target in pool(statements.measured).items()
+        * sum((weight * x for weight, x in zip(row, offsets, strict=True)), ZERO)
+        for name, row in zip(targets.names, targets.precision(), strict=True)
     }
     least = built.optimiser.optimise(banded, gradient, maximise=False)
     assert_proven(least)
     assert least.value == sum((slope * there[name] for name, slope in gradient.items()), ZERO)
 
 
-def test_random_points_are_moved() -> None:
+def test_random_points_are_moved_and_correlations_count() -> None:
     # Where every point is its target, the tests above would hold for a method that does nothing.
-    moved = 0
+    moved = otherwise = 0
     for seed in range(60):
-        built = build(random_case(4 + seed % 9, seed))
-        for name, target in pool(built.layers.statements.measured).items():
-            moved += built.point is not None and built.point[name] != target.value
+        case = random_case(4 + seed % 9, seed)
+        built, other = build(case), build(_correlated(case, seed))
+        assert (built.point is None) == (other.point is None)
+        if built.point is None or other.point is None:
+            continue
+        for name, target in built.layers.statements.pooled().items():
+            moved += built.point[name] != target.value
+        otherwise += built.point != other.point
     assert moved > 20
+    assert otherwise > 5

@@ -73,6 +73,23 @@ def _table_4_3(formula: str, reduction: str, mass: str, library: str) -> Composi
     )
 
 
+NIELSEN = "Nielsen and Villadsen 1994, Bioreaction Engineering Principles"
+GROBBELAAR = "Grobbelaar 2004, Handbook of Microalgal Culture"
+
+
+def _remembered(formula: str, reduction: str, library: str, source: str) -> Composition:
+    """A formula from memory; its degree of reduction was worked by hand."""
+    return Composition(
+        row="further",
+        formula=formula,
+        reduction=_exactly(reduction),
+        mass=None,
+        library=library,
+        source=source,
+        status="from memory",
+    )
+
+
 COMPOSITIONS: tuple[Composition, ...] = (
     Composition(
         row="C1",
@@ -210,4 +227,26 @@ COMPOSITIONS: tuple[Composition, ...] = (
         status="S",
         nitrogen="nitrate",
     ),
+    Composition(
+        row="C13",
+        formula="CH1.81O0.51N0.20",
+        reduction=_exactly("4.19"),
+        mass=Printed("24.8"),
+        library="Paracoccus denitrificans",
+        source=AFTER,
+        status="from memory",
+    ),
+    Composition(
+        row="E10",
+        formula="CH1.8O0.5N0.2",
+        reduction=_exactly("4.20"),
+        mass=Printed("24.63"),
+        library="Zymomonas mobilis",
+        source="Doran, Bioprocess Engineering Principles, problem 4.10",
+        status="S",
+    ),
+    _remembered("CH1.70O0.58N0.15", "4.09", "Penicillium chrysogenum", NIELSEN),
+    _remembered("CH1.72O0.55N0.17", "4.11", "Aspergillus niger", NIELSEN),
+    _remembered("CH1.93O0.55N0.25", "4.08", "Pseudomonas fluorescens", NIELSEN),
+    _remembered("CH1.83O0.48N0.11", "4.54", "Chlorella", GROBBELAAR),
 )

@@ -93,7 +93,7 @@ def test_no_row_is_lost() -> None:
     assert Counter(row.row for row in ROWS) == EXPECTED_ROWS
     assert len(ROWS) == 224
     assert len(LADDERS) == 18
-    assert len(COMPOSITIONS) == 23
+    assert len(COMPOSITIONS) == 29
     assert len(PRODUCTS) == 24
     assert len(CASES) == 20
     assert EXAMPLES

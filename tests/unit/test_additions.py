@@ -306,13 +306,19 @@ def test_a_file_with_growth_and_maintenance_lends_its_reactions_alone(
     network_of: NetworkOf,
 ) -> None:
     bound, _ = bind(network_of(HOST))
-    whole = network_of(HOST + "maintenance: {ATP: 1 mmol/g/h}\n")
+    whole = network_of(
+        HOST + "maintenance: {ATP: 1 mmol/g/h}\nparameters: {po: 1}\n"
+        "parameter sets: {two: {source: from memory, values: {po: 2}}}\n"
+        "meant for: {substrates: [glucose], products: [lactate]}\n"
+    )
     found = merge(bound, (), whole)
     assert len(found.already_there) == 8
     words = [item.message for item in found.findings if item.code == "YN708"]
     assert words == [
         "'growth' of the candidate file is not added",
         "'maintenance' of the candidate file is not added",
+        "'parameter sets' of the candidate file is not added",
+        "'meant for' of the candidate file is not added",
     ]
 
 

@@ -7,8 +7,11 @@ from typing import TYPE_CHECKING
 
 import pytest
 
+from tests.unit.conftest import NETWORK
+
 if TYPE_CHECKING:
     from collections.abc import Callable
+    from pathlib import Path
 
     from yieldnet.foundation.sourced import Assumption
     from yieldnet.prediction.result import Prediction
@@ -107,3 +110,37 @@ def test_elements_alone_assume_nothing_of_a_network(answers: dict[str, Predictio
     words = " ".join(item.text for item in answers["charged"].assumptions)
     assert "measured biomass is exact" in words
     assert not any(word in words for word in ("ATP", "parameter", "not in the equation"))
+
+
+SETS = """parameter sets:
+  much pumping: {about: all of it, source: from a book, values: {po: 2}}
+"""
+
+
+def test_a_parameter_set_is_told_with_its_source(
+    predict: Callable[[str], Prediction], tmp_path: Path
+) -> None:
+    (tmp_path / "network.yaml").write_text(NETWORK + SETS, "utf-8")
+    asked = "equation: glucose + ? oxygen -> ? ethanol\nparameter set: much pumping\n"
+    found = {item.text: item for item in predict(asked).assumptions}
+    assert found["parameter set 'much pumping': all of it"].source == "from a book"
+    value = found["parameter po (parameter set 'much pumping')"]
+    assert (value.value, value.source) == (F(2), "from a book")
+
+
+def test_a_value_of_the_case_comes_on_top_of_its_set(
+    predict: Callable[[str], Prediction], tmp_path: Path
+) -> None:
+    (tmp_path / "network.yaml").write_text(NETWORK + SETS, "utf-8")
+    asked = (
+        "equation: glucose + ? oxygen -> ? ethanol\nparameter set: much pumping\n"
+        "parameters: {po: 1}\naim: most ATP\n"
+    )
+    result = predict(asked)
+    found = {item.text: item for item in result.assumptions}
+    assert found["parameter po (set in the case)"].value == 1
+    assert "parameter po (parameter set 'much pumping')" not in found
+    assert "parameter set 'much pumping': all of it" in found
+    # 2 ATP and 12 NADH at 1 each, the set would give 2 each.
+    assert result.aim is not None
+    assert result.aim.value == 14

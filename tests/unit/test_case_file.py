@@ -24,7 +24,9 @@ if TYPE_CHECKING:
 F = Fraction
 NETWORK = """
 network: Small
-parameters: {po: 1.5}
+parameters: {po: 1.5, gain: 2}
+parameter sets:
+  little pumping: {source: from memory, values: {po: 0.5, gain: 1}}
 carriers:
   ATP: {kind: energy}
   NADH: {kind: redox, formula: H2}
@@ -234,6 +236,23 @@ def test_another_loader_is_chosen_by_the_ending_of_the_name(
     assert asked == [str(tmp_path / "network.yaml.other")]
 
 
+def test_a_parameter_set_lies_under_the_parameters_of_the_case(case_of: CaseOf, case: Case) -> None:
+    assert case.overrides() == {"po": F(5, 4)}
+    text = GOOD.replace("strain:", "parameter set: little pumping\nstrain:")
+    chosen, findings = case_of(text)
+    assert chosen is not None, findings.items
+    assert chosen.parameter_set is not None
+    assert chosen.parameter_set.name == "little pumping"
+    assert chosen.parameters == (("po", F(5, 4)),)
+    assert chosen.overrides() == {"po": F(5, 4), "gain": 1}
+    places = chosen.override_spans()
+    lines = text.split("\n")
+    assert lines[places["gain"].line - 1] == "parameter set: little pumping"
+    assert lines[places["po"].line - 1] == "parameters: {po: 5/4}"
+    # A study that changes a parameter changes it above the set, too.
+    assert chosen.with_parameter("gain", F(3)).overrides() == {"po": F(5, 4), "gain": 3}
+
+
 def test_look_ups_and_changed_copies(case: Case) -> None:
     assert case.coefficient("ethanol") is not None
     assert case.coefficient("glucose") is None
@@ -267,6 +286,15 @@ def test_look_ups_and_changed_copies(case: Case) -> None:
         # strain and knock-outs
         ("strain: without air", "strain: with air", "YN302", "strain 'with air' is not in the"),
         ("strain: without air", "strain: [x]", "YN112", "'strain' has the wrong shape"),
+        # parameter set
+        (
+            "strain: without air",
+            "parameter set: littel pumping",
+            "YN302",
+            "parameter set 'littel pumping' is not in the network",
+        ),
+        ("strain: without air", "parameter set: x", "YN302", "parameter set 'x' is not in"),
+        ("strain: without air", "parameter set: [x]", "YN112", "'parameter set' has the wrong"),
         ("[respiration]", "[respirations]", "YN302", "knock-out 'respirations' is neither"),
         ("[respiration]", "respiration", "YN112", "'knock-outs' has the wrong shape"),
         (
@@ -379,6 +407,7 @@ def test_a_mistake_is_told_and_refuses(
         ("ash: 0.1", "ash: 10", "YN210", "ash 10 is not a fraction of the dry weight"),
         ("  sweat:", "  ethanol: C2H5OHO\n  sweat:", "YN304", "'ethanol' has another formula"),
         ("measured:", "strain: x\nmeasured:", "YN111", "'strain' needs a 'network'"),
+        ("measured:", "parameter set: x\nmeasured:", "YN111", "'parameter set' needs a 'network'"),
         ("measured:", "knock-outs: [x]\nmeasured:", "YN111", "'knock-outs' needs a 'network'"),
         ("measured:", "parameters: {x: 1}\nmeasured:", "YN111", "'parameters' needs a 'network'"),
         (

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from fractions import Fraction
 from typing import TYPE_CHECKING
 
 import pytest
@@ -71,10 +72,16 @@ def test_a_large_move_is_a_warning(predict: Predict) -> None:
         "equation: glucose + ? oxygen -> ? ethanol\n"
         "measured: {ethanol: 1.0 ± 0.1, oxygen: 3.9 ± 0.3}\n"
     )
+    # Off by 0.3 with a variance of 0.01 + 0.09/9: each takes half of it, 1.5 s.d. The chi-square is
+    # 0.09/0.02 = 4.5 with one degree of freedom, so the values fail their test as well.
     assert [(code, severity) for code, severity, _ in _told(result)] == [
+        ("YN801", Severity.WARNING),
         ("YN604", Severity.WARNING),
         ("YN604", Severity.WARNING),
     ]
+    (test,) = result.tests
+    assert (test.layer, test.statistic, test.degrees) == ("elements", Fraction(9, 2), 1)
+    assert "although they fail the test" in result.assumptions[0].text
 
 
 def test_a_value_that_only_the_network_moves(predict: Predict) -> None:
@@ -122,3 +129,66 @@ def test_a_switch_that_changes_nothing_is_told(
     for (_, severity, message), words in zip(told, messages, strict=True):
         assert severity is Severity.WARNING
         assert words in message
+
+
+MEANT = NETWORK.replace(
+    "crossing:", "meant for: {substrates: [glucose], products: [ethanol, biomass]}\ncrossing:"
+)
+
+
+@pytest.mark.parametrize(
+    ("asked", "told"),
+    [
+        ("equation: glucose -> ? ethanol\naim: most ethanol\n", []),
+        ("equation: glucose -> ? ethanol + ? lactate\naim: most ethanol\n", []),
+        ("equation: glucose -> ? ethanol\nmeasured: {ethanol: 1.5}\n", []),
+        # How much is needed, and energy, are no products.
+        ("equation: glucose + ? oxygen -> ? lactate\naim: least oxygen\n", []),
+        ("equation: glucose + ? oxygen -> ? lactate\naim: most ATP\n", []),
+        (
+            "equation: glucose -> ? lactate\naim: most lactate\n",
+            [("product 'lactate'", "aim most lactate", "ethanol, biomass", 5)],
+        ),
+        (
+            "equation: glucose + ? oxygen -> ? lactate\naim: most carbon dioxide\n",
+            [("product 'carbon dioxide'", "aim most carbon dioxide", "ethanol, biomass", 5)],
+        ),
+        (
+            "equation: fructose -> ? ethanol\naim: most ethanol\n",
+            [("substrate 'fructose'", "basis fructose", "glucose", 4)],
+        ),
+        (
+            "equation: fructose -> ? lactate\naim: least lactate\n",
+            [
+                ("substrate 'fructose'", "basis fructose", "glucose", 4),
+                ("product 'lactate'", "aim least lactate", "ethanol, biomass", 5),
+            ],
+        ),
+    ],
+)
+def test_beyond_what_the_network_is_meant_for(
+    predict: Predict, tmp_path: Path, asked: str, told: list[tuple[str, str, str, int]]
+) -> None:
+    (tmp_path / "network.yaml").write_text(
+        MEANT.replace("[glucose, oxygen", "[glucose, fructose, oxygen").replace(
+            "reactions:", "reactions:\n  fructose path: fructose -> 2 pyruvate + 2 NADH + 2 ATP"
+        ),
+        "utf-8",
+    )
+    found = [item for item in predict(asked).findings if item.code == "YN516"]
+    assert len(found) == len(told)
+    for item, (what, left, meant, line) in zip(found, told, strict=True):
+        assert item.severity is Severity.WARNING
+        assert what in item.message
+        assert item.left == left
+        assert item.right.endswith(f" {meant}")
+        assert "'yieldnet networks' lists those that ship" in item.hint
+        assert "under 'meant for' of 'Small'" in item.hint
+        assert item.where is not None
+        assert item.where.line == line
+
+
+def test_elements_alone_are_meant_for_everything(predict: Predict, tmp_path: Path) -> None:
+    (tmp_path / "network.yaml").write_text(MEANT, "utf-8")
+    case = predict("equation: glucose -> ? lactate\naim: most lactate\n").case
+    assert "YN516" not in [item.code for item in yieldnet.balance(case).findings]

@@ -9,6 +9,7 @@ import re
 import shlex
 import subprocess
 import sys
+from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
 import click
@@ -20,10 +21,11 @@ from yieldnet.cli.main import main
 from yieldnet.cli.options import refuse
 from yieldnet.foundation.catalogue import CATALOGUE
 from yieldnet.foundation.errors import SolveError
+from yieldnet.optimum.proof import Optimiser
+from yieldnet.reading.shipped import shipped_names
 
 if TYPE_CHECKING:
     from collections.abc import Callable
-    from pathlib import Path
 
     from click.testing import Result
 
@@ -36,6 +38,8 @@ SMALLER = "examples/lysine/case.yaml"
 INFEASIBLE = "tests/golden/infeasible.case.yaml"
 BAD_CASE = "tests/golden/bad.case.yaml"
 BAD_NETWORK = "tests/golden/bad.network.yaml"
+MEASURED = "tests/golden/reconcile.case.yaml"
+FAILING = "tests/golden/reconcile-fails.case.yaml"
 
 
 def _refuse_constant(name: str) -> float:
@@ -73,6 +77,7 @@ def elsewhere(checkout: Path, tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -
 
 def test_the_verbs_of_the_daily_work_are_there() -> None:
     assert {"predict", "balance", "audit", "compounds", "networks", "explain"} <= set(VERBS)
+    assert "reconcile" in VERBS
 
 
 @pytest.mark.parametrize("ask", ["--help", "-h"])
@@ -121,6 +126,15 @@ def test_the_version_is_that_of_the_package(run: Run) -> None:
         (["predict", EXAMPLE, "--unit", "kg/kg"], "--unit"),
         (["predict", EXAMPLE, "--engine", "abacus"], "--engine"),
         (["predict", EXAMPLE, "--jason"], "--jason"),
+        (["predict", EXAMPLE, "--level", "95"], "--level"),
+        (["balance", EXAMPLE, "--level", "1"], "--level"),
+        (["reconcile"], "Missing argument 'CASE'"),
+        (["reconcile", MEASURED, "--level", "0"], "--level"),
+        (["reconcile", MEASURED, "--precision", "1"], "--precision"),
+        (["reconcile", MEASURED, "--precision", "-0.1"], "--precision"),
+        (["reconcile", MEASURED, "--draws", "1"], "--draws"),
+        (["reconcile", MEASURED, "--unit", "kg"], "--unit"),
+        (["reconcile", MEASURED, "--picture", "a.gif"], "ends in .svg or .png"),
         (["predict", EXAMPLE, EXAMPLE], "unexpected extra argument"),
         (["--nothing"], "--nothing"),
     ],
@@ -147,6 +161,17 @@ def test_wrong_usage_ends_with_2_and_says_what_is_right(
         (["balance", BAD_CASE], 1),
         (["predict", "nowhere.yaml"], 1),
         (["predict", "examples"], 1),
+        (["reconcile", MEASURED], 0),
+        (["reconcile", FAILING], 1),
+        (["reconcile", FAILING, "--level", "0.9999999"], 0),
+        (["reconcile", EXAMPLE], 0),
+        (["reconcile", EXAMPLE, "--elements"], 0),
+        (["reconcile", MEASURED, "--of", "acetate"], 0),
+        (["reconcile", MEASURED, "--of", "xylose"], 1),
+        (["reconcile", "tests/bad_inputs/exact-values-contradict.case.yaml"], 1),
+        (["reconcile", "tests/bad_inputs/nothing-measured.case.yaml"], 1),
+        (["reconcile", BAD_CASE], 1),
+        (["reconcile", "nowhere.yaml"], 1),
         (["audit", "models/lysine-coryneform.yaml"], 0),
         (["audit", "lysine-coryneform"], 0),
         (["audit", BAD_NETWORK], 1),
@@ -240,6 +265,7 @@ def test_findings_of_a_refused_case_go_to_the_error_stream(checkout: Path) -> No
     "arguments",
     [
         ["predict", "nowhere.yaml"],
+        ["reconcile", "nowhere.yaml"],
         ["audit", "nowhere.yaml"],
         ["networks", "nowhere"],
         ["compounds", "nothing of the kind"],
@@ -315,7 +341,60 @@ def test_tables_of_the_libraries_as_csv(run: Run) -> None:
     # A name with a comma is one cell.
     assert any(row["name"] == "1,3-propanediol" for row in compounds)
     networks = list(csv.DictReader(run("networks", "--csv").output.splitlines()))
-    assert [row["name"] for row in networks] == ["facultative-succinate", "lysine-coryneform"]
+    assert [row["name"] for row in networks] == list(shipped_names())
+    lysine = next(row for row in networks if row["name"] == "lysine-coryneform")
+    assert (lysine["substrates"], lysine["products"]) == ("glucose", "L-lysine")
+    assert int(lysine["checked"]) >= 4
+
+
+def test_the_list_of_networks_predicts_nothing(run: Run, monkeypatch: pytest.MonkeyPatch) -> None:
+    def refuse(*_: object) -> None:
+        raise AssertionError("a problem was solved")
+
+    monkeypatch.setattr(Optimiser, "optimise", refuse)
+    assert run("networks").exit_code == 0
+    assert run("networks", "lysine-coryneform").exit_code == 0
+
+
+def test_a_network_is_checked_against_what_it_reproduces(run: Run, tmp_path: Path) -> None:
+    good = run("networks", "lysine-coryneform", "--check")
+    assert good.exit_code == 0
+    assert "Villadsen, Nielsen" in good.output
+    assert "All 4 agree." in good.output
+    form = _json(run("networks", "lysine-coryneform", "--check", "--json").output)
+    assert (form["network"], form["agrees"], form["findings"]) == ("lysine-coryneform", True, [])
+    assert [item["found_exact"] for item in form["values"]] == ["3/4", "30/37", "3/4", "6/7"]
+    rows = list(
+        csv.DictReader(run("networks", "lysine-coryneform", "--check", "--csv").output.splitlines())
+    )
+    assert [row["agrees"] for row in rows] == ["yes"] * 4
+    text = Path("models/lysine-coryneform.yaml").read_text("utf-8")
+    changed = tmp_path / "changed.yaml"
+    assert text.count("value: 30/37") == 1
+    changed.write_text(text.replace("value: 30/37", "value: 31/37"), "utf-8")
+    bad = run("networks", str(changed), "--check")
+    assert bad.exit_code == 1
+    assert "1 of 4 do not agree." in bad.output
+    assert "31/37 mol/mol  30/37  no" in bad.output
+    form = _json(run("networks", str(changed), "--check", "--json").output)
+    assert form["agrees"] is False
+    assert [item["agrees"] for item in form["values"]] == [True, False, True, True]
+
+
+def test_a_check_needs_the_name_of_a_network(run: Run) -> None:
+    result = run("networks", "--check")
+    assert result.exit_code == 2
+    assert "--check needs the NAME of a network" in result.output
+    assert run("networks", "nowhere", "--check").exit_code == 1
+
+
+def test_a_check_shows_what_is_doubtful_in_a_case(run: Run, tmp_path: Path) -> None:
+    text = Path("tests/bad_inputs/networks/meant.yaml").read_text("utf-8")
+    path = tmp_path / "meant.yaml"
+    path.write_text(text.replace("products: [ethanol]", "products: [lactate]"), "utf-8")
+    result = run("networks", str(path), "--check")
+    assert result.exit_code == 0
+    assert "warning YN516" in result.output
 
 
 def test_one_compound_in_full_and_several_as_a_table(run: Run) -> None:
@@ -385,6 +464,7 @@ def _screens(checkout: Path) -> list[list[str]]:
     screens += [["networks"], ["compounds"], ["compounds", "phosphate"], ["explain"]]
     screens += [["explain", code] for code in CATALOGUE]
     screens += [["predict", INFEASIBLE], ["predict", BAD_CASE], ["audit", BAD_NETWORK]]
+    screens += [["reconcile", case] for case in (EXAMPLE, MEASURED, FAILING, BAD_CASE)]
     screens += [[verb, "--help"] for verb in VERBS]
     screens += [["--help"], ["predictt"], ["compounds", "qqqq"], ["explain", "qqqq"]]
     return screens
@@ -411,3 +491,77 @@ def test_no_line_told_of_a_bad_file_is_wider_than_80(run: Run, checkout: Path) -
         lines = run(verb, f"tests/bad_inputs/{path.name}").output.splitlines()
         wide += [f"{path.name}: {line}" for line in lines if len(line) > 80]
     assert wide == []
+
+
+# Judging data ------------------------------------------------------------------------------------
+
+
+def test_the_text_of_judged_data_has_its_verdict_first(run: Run) -> None:
+    good, bad = run("reconcile", MEASURED).output, run("reconcile", FAILING).output
+    assert good.splitlines()[3].startswith("The measured values agree within their errors")
+    assert bad.splitlines()[3].startswith("The measured values fail their test")
+    assert "YN802: most suspect: measured ethanol" in " ".join(bad.split())
+
+
+def test_a_picture_of_judged_data_is_drawn_once(run: Run, tmp_path: Path) -> None:
+    path = tmp_path / "data.svg"
+    assert run("reconcile", MEASURED, "--picture", str(path)).exit_code == 0
+    drawn = path.read_bytes()
+    assert drawn.startswith(b"<?xml")
+    again = run("reconcile", MEASURED, "--picture", str(path))
+    assert again.exit_code == 2
+    assert "--force replaces it" in " ".join(again.output.split())
+    path.write_text("mine", "utf-8")
+    # A picture of values that fail is drawn as well, and the exit code still says so.
+    assert run("reconcile", FAILING, "--picture", str(path), "--force").exit_code == 1
+    assert path.read_bytes().startswith(b"<?xml")
+    assert path.read_bytes() != drawn
+    nowhere = run("reconcile", MEASURED, "--picture", str(tmp_path / "nowhere" / "a.svg"))
+    assert nowhere.exit_code == 1
+    assert "No such file or directory" in nowhere.output
+
+
+def test_the_elements_alone_judge_without_the_network(run: Run) -> None:
+    both = run("reconcile", EXAMPLE).output
+    alone = run("reconcile", EXAMPLE, "--elements").output
+    assert "network: " in both.splitlines()[1]
+    assert "elements alone" in " ".join(alone.split())
+    assert _json(run("reconcile", EXAMPLE, "--elements", "--json").output)["status"] == "agrees"
+
+
+def test_the_next_measurement_is_for_whom_it_is_asked(run: Run) -> None:
+    form = _json(run("reconcile", MEASURED, "--json").output)
+    assert form["next"]["of"] == "ethanol"
+    asked = _json(
+        run("reconcile", MEASURED, "--json", "--of", "acetate", "--precision", "0.2").output
+    )
+    assert (asked["next"]["of"], asked["next"]["precision"]) == ("acetate", 0.2)
+    assert asked["tests"] == form["tests"]
+    refused = run("reconcile", MEASURED, "--of", "acetat")
+    assert "'acetat' is not in the overall equation" in " ".join(refused.output.split())
+    assert "Did you mean 'acetate'?" in refused.output
+
+
+def test_the_csv_of_judged_data_holds_the_numbers_of_the_json(run: Run) -> None:
+    rows = list(csv.DictReader(run("reconcile", MEASURED, "--csv").output.splitlines()))
+    form = _json(run("reconcile", MEASURED, "--json").output)
+    listed = [*form["values"], *form["calculated"]]
+    assert [row["compound"] for row in rows] == [item["compound"] for item in listed]
+    for row, item in zip(rows, form["values"], strict=False):
+        assert float(row["reconciled"]) == item["reconciled"]
+        assert float(row["reconciled s.d."]) == item["reconciled_sd"]
+
+
+def test_the_unit_of_judged_values_is_the_one_asked_for(run: Run) -> None:
+    assert "Measured and reconciled, g/g" in run("reconcile", MEASURED, "--unit", "g/g").output
+    plain = run("reconcile", MEASURED, "--json").output
+    assert run("reconcile", MEASURED, "--json", "--unit", "g/g").output == plain
+
+
+def test_the_level_of_a_prediction_decides_whether_its_data_pass(run: Run) -> None:
+    strict = _json(run("balance", FAILING, "--json").output)
+    lax = _json(run("balance", FAILING, "--json", "--level", "0.9999999").output)
+    assert [item["passed"] for item in strict["data_tests"]] == [False]
+    assert [item["passed"] for item in lax["data_tests"]] == [True]
+    assert "YN801" in [item["code"] for item in strict["findings"]]
+    assert "YN801" not in [item["code"] for item in lax["findings"]]

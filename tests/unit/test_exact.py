@@ -14,6 +14,9 @@ from yieldnet.foundation.exact import (
     WrittenNumber,
     decimal_text,
     eliminate,
+    inverse,
+    is_positive_definite,
+    product,
     read_number,
     root_of_square,
 )
@@ -169,3 +172,73 @@ def test_elimination_keeps_large_fractions_exact() -> None:
     small = F(1, 10**25)
     form = eliminate([[F(1), small], [F(1), F(0)]], 2)
     assert form.rows == ((F(1), F(0)), (F(0), F(1)))
+
+
+# Matrices ----------------------------------------------------------------------------------------
+
+
+def test_the_inverse_by_hand() -> None:
+    # Determinant 4 · 6 - 7 · 2 = 10.
+    assert inverse([[F(4), F(7)], [F(2), F(6)]]) == (
+        (F(6, 10), F(-7, 10)),
+        (F(-2, 10), F(4, 10)),
+    )
+    assert inverse([]) == ()
+    # Rows must be exchanged on the way.
+    assert inverse([[F(0), F(1)], [F(2), F(0)]]) == ((F(0), F(1, 2)), (F(1), F(0)))
+
+
+@pytest.mark.parametrize("size", [1, 2, 3, 5])
+def test_a_matrix_times_its_inverse_is_one(size: int) -> None:
+    # The Hilbert matrix: almost singular in floats, exact in fractions.
+    matrix = [[F(1, i + j + 1) for j in range(size)] for i in range(size)]
+    unit = tuple(tuple(F(i == j) for j in range(size)) for i in range(size))
+    assert product(matrix, inverse(matrix)) == unit
+    assert product(inverse(matrix), matrix) == unit
+
+
+@pytest.mark.parametrize(
+    "matrix", [[[F(0)]], [[F(1), F(2)], [F(2), F(4)]], [[F(0), F(0)], [F(0), F(1)]]]
+)
+def test_a_singular_matrix_has_no_inverse(matrix: list[list[Fraction]]) -> None:
+    with pytest.raises(ZeroDivisionError, match="a singular matrix has no inverse"):
+        inverse(matrix)
+
+
+def test_the_product_by_hand() -> None:
+    left = [[F(1), F(2), F(0)], [F(0), F(-1), F(3)]]
+    right = [[F(1)], [F(1, 2)], [F(2)]]
+    assert product(left, right) == ((F(2),), (F(11, 2),))
+    assert product([], right) == ()
+    with pytest.raises(ValueError, match="zip"):
+        product(left, right[:2])
+
+
+@pytest.mark.parametrize(
+    ("matrix", "definite"),
+    [
+        ([], True),
+        ([[F(1)]], True),
+        ([[F(0)]], False),
+        ([[F(-1)]], False),
+        ([[F(1), F(9, 10)], [F(9, 10), F(1)]], True),
+        ([[F(1), F(1)], [F(1), F(1)]], False),
+        ([[F(1), F(2)], [F(2), F(1)]], False),
+        # All pairs are possible; the three together are not.
+        (
+            [
+                [F(1), F(9, 10), F(-9, 10)],
+                [F(9, 10), F(1), F(9, 10)],
+                [F(-9, 10), F(9, 10), F(1)],
+            ],
+            False,
+        ),
+        # Determinant 1 - 2 · 0.49 = 0.02, and with 3/4 it is -1/8.
+        ([[F(1), F(7, 10), F(0)], [F(7, 10), F(1), F(7, 10)], [F(0), F(7, 10), F(1)]], True),
+        ([[F(1), F(3, 4), F(0)], [F(3, 4), F(1), F(3, 4)], [F(0), F(3, 4), F(1)]], False),
+    ],
+)
+def test_a_matrix_is_positive_definite_by_its_pivots(
+    matrix: list[list[Fraction]], definite: bool
+) -> None:
+    assert is_positive_definite(matrix) is definite

@@ -133,3 +133,61 @@ def test_rank_is_what_is_not_free() -> None:
     assert Freedom(layer="elements", unknowns=10, free=6).rank == 4
     assert CoefficientEquations((), ()).free() == 0
     assert CoefficientEquations(("a",), ()).calculable() == set()
+
+
+# Right sides -------------------------------------------------------------------------------------
+
+
+def test_the_equations_have_the_basis_on_their_right_side(case_of: CaseOf) -> None:
+    equations = _by_elements(case_of, f"equation: glucose -> ? ethanol + ? lactate\n{EITHER}")
+    # Any answer keeps them: 2 ethanol and 2 carbon dioxide, or 2 lactate.
+    for point in ({"ethanol": 2, "carbon dioxide": 2}, {"lactate": 2}):
+        for row, constant in zip(equations.rows, equations.constants, strict=True):
+            pairs = zip(equations.names, row, strict=True)
+            assert sum(factor * point.get(name, 0) for name, factor in pairs) == constant
+    assert any(equations.constants)
+
+
+def test_a_given_coefficient_moves_to_the_right_side(case_of: CaseOf) -> None:
+    text = f"equation: glucose -> 1/2 ethanol + ? lactate\n{EITHER}"
+    equations = _by_elements(case_of, text)
+    assert equations.expressed([]) == {
+        "lactate": ({}, Fraction(3, 2)),
+        "carbon dioxide": ({}, Fraction(1, 2)),
+        "water": ({}, Fraction(0)),
+    }
+
+
+def test_what_follows_is_expressed_by_what_is_known(case_of: CaseOf) -> None:
+    equations = _by_elements(case_of, f"equation: glucose -> ? ethanol + ? lactate\n{EITHER}")
+    one = Fraction(1)
+    assert equations.expressed(["ethanol"]) == {
+        "lactate": ({"ethanol": -one}, Fraction(2)),
+        "carbon dioxide": ({"ethanol": one}, Fraction(0)),
+        "water": ({}, Fraction(0)),
+    }
+    # Without anything known only water follows, and a name from elsewhere adds nothing.
+    assert equations.expressed(["acetate"]) == {"water": ({}, Fraction(0))}
+
+
+def test_only_what_follows_is_expressed(case_of: CaseOf) -> None:
+    text = f"equation: glucose + ? oxygen -> ? ethanol + ? lactate\n{EITHER}"
+    equations = _by_elements(case_of, text)
+    assert equations.expressed([]) == {}
+    # Oxygen is positive where it is made: 4 oxygen = 12 ethanol + 12 lactate - 24.
+    found = equations.expressed(["ethanol", "lactate"])
+    assert found["oxygen"] == ({"ethanol": Fraction(3), "lactate": Fraction(3)}, Fraction(-6))
+    assert equations.expressed(["ethanol"]) == {}
+    assert found.keys() == {"oxygen", "carbon dioxide", "water"}
+
+
+def test_values_that_are_told_as_well_are_not_expressed(case_of: CaseOf) -> None:
+    equations = _by_elements(case_of, f"equation: glucose -> ? ethanol + ? lactate\n{EITHER}")
+    # Redundant values: carbon dioxide follows from either of them, so from both.
+    found = equations.expressed(["ethanol", "lactate"])
+    assert set(found) == {"carbon dioxide", "water"}
+    factors, constant = found["carbon dioxide"]
+    values = {"ethanol": Fraction(5, 4), "lactate": Fraction(3, 4)}
+    assert sum(factor * values[name] for name, factor in factors.items()) + constant == Fraction(
+        5, 4
+    )

@@ -20,10 +20,14 @@ from yieldnet.report.library_view import (
     network_form,
     network_lines,
     networks_table,
+    reproduced_form,
+    reproduced_table,
 )
+from yieldnet.verbs import read_reproducing_network, reproduce
 
 if TYPE_CHECKING:
     from collections.abc import Callable
+    from pathlib import Path
 
     from yieldnet.chemistry.library import BiomassEntry, CompoundEntry
     from yieldnet.model.network import Network
@@ -39,14 +43,14 @@ parameters: {po: {value: 1.5, low: 1, high: 2, unit: mol/mol}, bare: 2}
 carriers:
   ATP: {kind: energy}
   NADH: {kind: redox, formula: H2}
-crossing: {in: [glucose, oxygen, ammonia], out: [biomass, lactate], either: [water]}
+crossing: {in: [glucose, oxygen, ammonia], out: [biomass, lactate], either: [water, carbon dioxide]}
 reactions:
   fermentation: glucose -> 2 lactate + (bare) ATP
   respiration: {equation: NADH + 1/2 oxygen -> water + (po) ATP, group: breathing}
 strains: {without air: [breathing]}
 growth:
   biomass: {formula: CH1.8O0.5N0.2, ash: 0.05}
-  equation: 0.2 glucose + 0.2 ammonia + ATP -> biomass + ? water + ? NADH + ? oxygen
+  equation: 0.2 glucose + 0.2 ammonia + ATP -> biomass + ? water + ? NADH + ? carbon dioxide
 """
 
 
@@ -170,7 +174,7 @@ def test_a_network_is_told_in_full(network: Network) -> None:
     for words in (
         "taken up    glucose, oxygen, ammonia",
         "given off   biomass, lactate",
-        "either way  water",
+        "either way  water, carbon dioxide",
         "groups      breathing",
         "strain 'without air' switches off: breathing",
         "po = 1.50 (1 … 2) mol/mol",
@@ -194,15 +198,109 @@ def test_what_a_network_does_not_have_is_not_told(network_of: Callable[[str], Ne
 
 
 def test_networks_in_a_table_and_as_json(network: Network) -> None:
-    table = networks_table([("small", network)])
-    assert (table.rows[0][0], table.rows[0][-1]) == ("small", "Small")
+    table = networks_table([("small", network, ())])
+    assert table.columns == ("name", "substrates", "products", "reactions", "checked")
+    # Where it does not say what it is meant for, what crosses is told.
+    assert table.rows == (("small", "glucose, oxygen, ammonia", "biomass, lactate", "2", "0"),)
     form = network_form("small", network)
     assert form["name"] == "small"
     assert form["about"] == "First paragraph of it. Second paragraph."
     assert form["taken_up"] == ["glucose", "oxygen", "ammonia"]
     assert form["given_off"] == ["biomass", "lactate"]
-    assert form["either_way"] == ["water"]
+    assert form["either_way"] == ["water", "carbon dioxide"]
     assert form["groups"] == ["breathing"]
     assert form["strains"] == {"without air": ["breathing"]}
     assert form["parameters"] == {"po": 1.5, "bare": 2}
     assert form["reactions"]["fermentation"] == "glucose -> 2 lactate + (bare) ATP"
+    assert (form["meant_for"], form["parameter_sets"], form["reproduces"]) == (None, [], [])
+
+
+ENTRIES = (
+    "  exact: {equation: glucose -> ? lactate, aim: most lactate, value: 2, source: by hand}\n",
+    "  wrong: {equation: glucose -> ? lactate, aim: most lactate, value: 7/3, source: by hand}\n",
+    "  grams: {equation: glucose -> ? lactate, aim: most lactate, value: 1.00 g/g, source: by"
+    " hand}\n",
+    "  third: {equation: glucose -> ? lactate, aim: most lactate, value: 1 C-mmol/g, source: by"
+    " hand}\n",
+    "  never: {equation: glucose -> ? lactate, aim: most lactate, demands: {lactate: at least 3},"
+    " value: 3, source: by hand}\n",
+)
+SECTIONS = """
+meant for: {substrates: [glucose], products: [lactate]}
+parameter sets: {little: {about: the poor branch, source: from memory, values: {po: 1, bare: 3},
+  maintenance: {ATP: 3 mmol/g/h}}}
+reproduces:
+"""
+
+
+@pytest.fixture(scope="module")
+def meant(tmp_path_factory: pytest.TempPathFactory) -> Path:
+    path = tmp_path_factory.mktemp("networks") / "meant.yaml"
+    path.write_text(NETWORK + SECTIONS + "".join(ENTRIES), "utf-8")
+    return path
+
+
+def test_what_a_network_is_meant_for_its_sets_and_what_it_reproduces(meant: Path) -> None:
+    network, reproductions = read_reproducing_network(meant)
+    lines = network_lines("meant", network, reproductions)
+    text = "\n".join(text for text, _ in lines)
+    for words in (
+        "meant for   glucose to lactate",
+        "parameter set 'little': po = 1, bare = 3, maintenance ATP 3 mmol/g/h; the poor\n"
+        "    branch\n    source: from memory",
+        "reproduces 'exact': most lactate, 2 mol/mol\n    source: by hand",
+        "reproduces 'grams': most lactate, 1.00 g/g",
+    ):
+        assert words in text, words
+    assert all(len(line) <= 80 for line in text.split("\n"))
+    table = networks_table([("meant", network, reproductions)])
+    assert table.rows == (("meant", "glucose", "lactate", "2", "5"),)
+    form = network_form("meant", network, reproductions)
+    assert form["meant_for"] == {"substrates": ["glucose"], "products": ["lactate"]}
+    assert form["parameter_sets"] == [
+        {
+            "name": "little",
+            "values": {"po": 1, "bare": 3},
+            "maintenance_mol_per_g_h": 0.003,
+            "about": "the poor branch",
+            "source": "from memory",
+        }
+    ]
+    assert form["reproduces"][0] == {
+        "name": "exact",
+        "equation": "glucose -> ? lactate",
+        "aim": "most lactate",
+        "expected": 2,
+        "expected_text": "2",
+        "unit": "mol/mol",
+        "source": "by hand",
+    }
+
+
+def test_expected_beside_found(meant: Path) -> None:
+    found = reproduce(meant)
+    table = reproduced_table("meant", found)
+    assert table.columns == ("name", "expected", "found", "agrees", "source")
+    assert [row[:4] for row in table.rows] == [
+        ("exact", "2 mol/mol", "2", "yes"),
+        ("wrong", "7/3 mol/mol", "2", "no"),
+        # Both have the formula CH2O: a gram becomes a gram, here with one digit more than written.
+        ("grams", "1.00 g/g", "1.000", "yes"),
+        # 6000 C-mmol over 180.156 g is 500000/15013, too long to be read, so a decimal.
+        ("third", "1 C-mmol/g", "33.3044695", "no"),
+        ("never", "3 mol/mol", "infeasible", "no"),
+    ]
+    assert table.note == "3 of 5 do not agree."
+    form = reproduced_form("meant", found)
+    assert (form["network"], form["agrees"]) == ("meant", False)
+    assert [item["agrees"] for item in form["values"]] == [True, False, True, False, False]
+    assert form["values"][1]["found"] == 2
+    assert form["values"][1]["found_exact"] == "2"
+    assert form["values"][-1]["status"] == "infeasible"
+    assert form["values"][-1]["found"] is None
+    assert reproduced_table("meant", found[:1]).note == "All 1 agree."
+    assert reproduced_form("meant", found[:1])["agrees"] is True
+
+
+def test_nothing_to_reproduce_is_said() -> None:
+    assert "nothing to check" in reproduced_table("x", ()).note

@@ -86,6 +86,99 @@ def test_a_bad_quantity_says_what_is_wrong(
 
 
 @pytest.mark.parametrize(
+    ("text", "sd"),
+    [
+        # A 95 % interval of a normal distribution is 1.96 standard deviations to either side.
+        ("0.50 ± 0.098 (95 %)", F(1, 20)),
+        ("0.50 ± 0.098 g/g (95 %)", F(1, 20)),
+        ("0.50 ± 0.098 g/g (95%)", F(1, 20)),
+        ("0.50 ± 19.6 % g/g (95 %)", F(1, 20)),
+        # The standard deviation of a mean of four is half that of the single values.
+        ("0.50 ± 0.1 g/g (n = 4)", F(1, 20)),
+        ("0.50 ± 0.1 (n=4)", F(1, 20)),
+        ("0.50 ± 0.3 g/g ( n = 9 )", F(1, 10)),
+    ],
+)
+def test_a_bracket_says_what_the_error_is(span: SourceSpan, text: str, sd: Fraction) -> None:
+    findings = Findings()
+    quantity = read_quantity(text, span, "it", findings)
+    assert list(findings) == []
+    assert quantity is not None
+    assert quantity.number.value == F(1, 2)
+    assert quantity.sd == sd
+    assert str(quantity.unit) == ("g/g" if "g/g" in text else "None")
+
+
+@pytest.mark.parametrize(
+    ("bracket", "divisor"),
+    [
+        # Student's t of 97.5 % with n - 1 degrees of freedom, from printed tables (from memory).
+        ("(95 %, n = 4)", 3.182446305),
+        ("(n = 4, 95 %)", 3.182446305),
+        ("(95 %, n = 2)", 12.7062047),
+        ("(95 %, n = 11)", 2.228138852),
+        ("(95 %, n = 100000)", 1.96),
+        # The root of a number that is no square.
+        ("(n = 3)", 3**0.5),
+        ("(n = 100000)", 316.227766),
+    ],
+)
+def test_an_interval_from_few_values_is_wider(
+    span: SourceSpan, bracket: str, divisor: float
+) -> None:
+    findings = Findings()
+    quantity = read_quantity(f"0.5 ± 0.1 g/g {bracket}", span, "it", findings)
+    assert list(findings) == []
+    assert quantity is not None
+    assert quantity.sd is not None
+    assert 0.1 / float(quantity.sd) == pytest.approx(
+        divisor, rel=1e-4 if "00000" in bracket else 1e-8
+    )
+
+
+@pytest.mark.parametrize(
+    ("text", "code", "reason", "hint"),
+    [
+        ("0.5 (95 %)", "YN201", "(95 %) explains an error, and none is written", "± error unit"),
+        ("0.5 g/g (n = 4)", "YN201", "(n = 4) explains an error, and none is", "± error unit"),
+        ("0.5 exact (95 %)", "YN201", "(95 %) explains an error, and none is", "± error unit"),
+        ("0.5 ± 0 (95 %)", "YN201", "(95 %) explains an error, and none is", "± error unit"),
+        ("0.5 ± 0.1 (n = 1)", "YN210", "n = 1 is no number of values", "from 2 to 100000"),
+        ("0.5 ± 0.1 (n = 0)", "YN210", "n = 0 is no number of values", "from 2 to 100000"),
+        ("0.5 ± 0.1 (n = 100001)", "YN210", "n = 100001 is no number", "from 2 to 100000"),
+        ("0.5 ± 0.1 (90 %)", "YN201", "(90 %) is not understood behind an error", "(95 %)"),
+        ("0.5 ± 0.1 (n = 4.5)", "YN201", "(n = 4.5) is not understood", "(n = 4)"),
+        ("0.5 ± 0.1 (n = -4)", "YN201", "(n = -4) is not understood", "(n = 4)"),
+        ("0.5 ± 0.1 (N = 4)", "YN201", "(N = 4) is not understood", "(n = 4)"),
+        ("0.5 ± 0.1 (4)", "YN201", "(4) is not understood", "(n = 4)"),
+        ("0.5 ± 0.1 ()", "YN201", "() is not understood", "(n = 4)"),
+        ("0.5 ± 0.1 (95 %, 95 %)", "YN201", "is not understood", "(95 %, n = 4)"),
+        ("0.5 ± 0.1 (n = 3, n = 3)", "YN201", "is not understood", "(95 %, n = 4)"),
+        ("0.5 ± 0.1 (95 %, n = 4, x)", "YN201", "is not understood", "(95 %, n = 4)"),
+        ("0.5 ± 0.1 (95 %,)", "YN201", "is not understood", "(95 %, n = 4)"),
+        ("0.5 ± -0.1 (95 %)", "YN209", "the standard deviation -0.1 is negative", "sign"),
+        ("0.5 ± 0.1 furlongs (95 %)", "YN203", "unit 'furlongs' is not known", "Known"),
+    ],
+)
+def test_a_bracket_that_explains_nothing_is_told(
+    span: SourceSpan, text: str, code: str, reason: str, hint: str
+) -> None:
+    findings = Findings()
+    assert read_quantity(text, span, "it", findings) is None
+    (finding,) = findings
+    assert finding.code == code
+    assert reason in finding.message
+    assert hint in finding.hint
+
+
+@pytest.mark.parametrize("text", ["0.5 ± 0.1 (95 %) g/g", "0.5 (95 %) ± 0.1", "(95 %)", "± (95 %)"])
+def test_a_bracket_in_another_place_is_not_understood(span: SourceSpan, text: str) -> None:
+    findings = Findings()
+    assert read_quantity(text, span, "it", findings) is None
+    assert len(findings.items) == 1
+
+
+@pytest.mark.parametrize(
     ("text", "low", "high", "unit"),
     [
         ("at most 0.65", None, F(13, 20), "None"),

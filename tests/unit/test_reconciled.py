@@ -13,10 +13,11 @@ from typing import TYPE_CHECKING
 
 import pytest
 
+from yieldnet.balance.covariance import Pooled
 from yieldnet.balance.elements import element_problem
-from yieldnet.balance.reconciled import Target, pool, reconciled_point
+from yieldnet.balance.reconciled import nearest_point, reconciled_point
 from yieldnet.balance.statements import statements_of, with_demands
-from yieldnet.model.case import Measurement
+from yieldnet.model.case import Correlation, Measurement
 from yieldnet.optimum.engine import engine_named
 from yieldnet.optimum.proof import Optimiser
 
@@ -42,34 +43,18 @@ def _measured(compound: str, value: str, sd: str | None, label: str = "") -> Mea
 
 
 def _point(
-    case_of: CaseOf, *measured: Measurement, demand: str = "", text: str = CASE
+    case_of: CaseOf,
+    *measured: Measurement,
+    demand: str = "",
+    text: str = CASE,
+    correlations: tuple[Correlation, ...] = (),
 ) -> dict[str, Fraction] | None:
     case, findings = case_of(text + demand)
     assert case is not None, findings.items
-    case = replace(case, measured=measured)
+    case = replace(case, measured=measured, correlations=correlations)
     statements = statements_of(case)
     problem = with_demands(element_problem(case, statements), statements)
     return reconciled_point(Optimiser(engine_named("glpk")), problem, case, statements)
-
-
-def test_values_of_one_coefficient_are_pooled_by_their_weights() -> None:
-    targets = pool(
-        [
-            _measured("ethanol", "1", "1", "one"),
-            _measured("lactate", "3", "2"),
-            _measured("ethanol", "2", "1/2", "two"),
-        ]
-    )
-    # Weights 1 and 4: (1 + 8)/5, and a variance of 1/5.
-    assert targets == {
-        "ethanol": Target(Fraction(9, 5), Fraction(5)),
-        "lactate": Target(Fraction(3), Fraction(1, 4)),
-    }
-    assert targets["ethanol"].variance == Fraction(1, 5)
-
-
-def test_an_exact_value_leaves_nothing_to_pool() -> None:
-    assert pool([_measured("ethanol", "1", "1/10"), _measured("ethanol", "2", None, "two")]) == {}
 
 
 def test_nothing_measured_is_an_empty_point(case_of: CaseOf) -> None:
@@ -171,4 +156,55 @@ def test_weights_that_no_decimal_holds_stay_exact(case_of: CaseOf) -> None:
     assert point == {
         "ethanol": Fraction(6, 5) - Fraction(1, 5) * Fraction(49, 58),
         "lactate": 1 - Fraction(1, 5) * Fraction(9, 58),
+    }
+
+
+def _correlated(value: str) -> tuple[Correlation, ...]:
+    return (Correlation(first="ethanol", second="lactate", value=Fraction(value)),)
+
+
+@pytest.mark.parametrize(
+    ("correlation", "ethanol", "lactate"),
+    [
+        # Without a correlation the excess of 0.2 is shared 4 to 1, as above.
+        ("0", "26/25", "24/25"),
+        # With 1/2 the covariance is (0.04 0.01; 0.01 0.01): each takes its row sum, 5 to 2.
+        ("1/2", "37/35", "33/35"),
+        # With -1/2 the rows sum to 0.03 and 0: lactate keeps its value, though it is known well.
+        ("-1/2", "1", "1"),
+        # With -4/5 the row of lactate sums to -0.006, and of ethanol to 0.024: it moves the same
+        # way as the excess, since an ethanol too high goes with a lactate too low.
+        ("-4/5", "14/15", "16/15"),
+    ],
+)
+def test_correlated_errors_move_together(
+    case_of: CaseOf, correlation: str, ethanol: str, lactate: str
+) -> None:
+    one, two = _measured("ethanol", "1.2", "0.2"), _measured("lactate", "1.0", "0.1")
+    point = _point(case_of, one, two, correlations=_correlated(correlation))
+    assert point == {"ethanol": Fraction(ethanol), "lactate": Fraction(lactate)}
+
+
+def test_bands_hold_with_correlated_errors_too(case_of: CaseOf) -> None:
+    # An excess of 0.5 with a correlation of -4/5 would move ethanol by -2/3, beyond its 0.4; at the
+    # end of that band lactate takes the rest.
+    one, two = _measured("ethanol", "1.5", "0.2"), _measured("lactate", "1.0", "0.1")
+    point = _point(case_of, one, two, correlations=_correlated("-4/5"))
+    assert point == {"ethanol": Fraction("1.1"), "lactate": Fraction("0.9")}
+
+
+def test_the_nearest_point_needs_no_bands(case_of: CaseOf) -> None:
+    # An excess of 1 beyond every band is shared all the same, by the variances 4 to 1; only sides
+    # and balances count.
+    case, findings = case_of(CASE)
+    assert case is not None, findings.items
+    problem = element_problem(case, statements_of(case))
+    variances = ((Fraction("0.04"), Fraction(0)), (Fraction(0), Fraction("0.01")))
+    wanted = Pooled(
+        names=("ethanol", "lactate"), values=(Fraction(2), Fraction(1)), covariance=variances
+    )
+    optimiser = Optimiser(engine_named("glpk"))
+    assert nearest_point(optimiser, problem, case, wanted) == {
+        "ethanol": Fraction("1.2"),
+        "lactate": Fraction("0.8"),
     }

@@ -78,3 +78,26 @@ def test_the_schemas_are_schemas_and_refuse() -> None:
     for schema in (case_schema(), network_schema()):
         Draft202012Validator.check_schema(schema)
         assert list(Draft202012Validator(schema).iter_errors({"case": 3, "surprise": 1}))
+
+
+@pytest.mark.parametrize(
+    ("correlations", "valid"),
+    [
+        ({}, True),
+        ({"ethanol": {"lactate": 0.4, "acetate": "-1/4"}}, True),
+        ({"ethanol": 0.4}, False),
+        ({"ethanol": {"lactate": [0.4]}}, False),
+        (["ethanol", "lactate", 0.4], False),
+    ],
+)
+def test_correlations_are_numbers_by_two_names(correlations: object, valid: bool) -> None:
+    case = {"case": "x", "equation": "glucose -> ? ethanol", "correlations": correlations}
+    found = list(Draft202012Validator(case_schema()).iter_errors(case))
+    assert (found == []) is valid, [error.message for error in found]
+
+
+@pytest.mark.parametrize("name", ["reconcile", "reconcile-fails"])
+def test_a_case_with_correlations_and_intervals_is_valid(name: str) -> None:
+    case = _loaded(CHECKOUT / "tests" / "golden" / f"{name}.case.yaml")
+    found = list(Draft202012Validator(case_schema()).iter_errors(case))
+    assert [error.message for error in found] == []

@@ -81,6 +81,29 @@ def test_a_table_that_is_too_wide_folds_its_widest_column(
     assert sum(line.endswith("▪" * 8) for line in lines) == bool(bars)
 
 
+def test_several_columns_fold_and_names_stay_whole(out: Console) -> None:
+    names = ", ".join(f"{count},3-propanediol" for count in range(1, 9))
+    table = Table(
+        title="Title",
+        columns=("name", "from", "to", "n"),
+        rows=(("first", names, names, "12"), ("second", "x", "y", "3")),
+    )
+    print_table(out, table)
+    lines = _lines(out)
+    for count in range(1, 9):
+        assert sum(line.count(f"{count},3-propanediol") for line in lines) == 2
+    # Both long columns give way alike, so the rows of one name stand beside each other.
+    (first,) = [line for line in lines if line.startswith(" first ")]
+    assert first.count("1,3-propanediol") == 2
+    assert first.endswith("12")
+
+
+def test_a_word_longer_than_the_page_is_broken(out: Console) -> None:
+    table = Table(title="T", columns=("a", "b"), rows=(("x" * 200, "y"),))
+    print_table(out, table)
+    assert "".join(_lines(out)).count("x") == 200
+
+
 def test_bars_are_as_long_as_their_share_of_eight(out: Console) -> None:
     table = Table(title="T", columns=("n",), rows=(("1",), ("2",), ("3",)), bars=(1.0, 0.25, 0.0))
     print_table(out, table)

@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING
 
 import pytest
 
+from yieldnet.model.case import Named
 from yieldnet.optimum.ranges import Range
 from yieldnet.prediction.result import CarbonDioxideNeed
 from yieldnet.report.view import UNITS, equation_text, view_of
@@ -72,6 +73,12 @@ def test_the_setting_names_basis_network_and_switches(
     answers: Answers, name: str, words: str
 ) -> None:
     assert view_of(answers[name]).setting == words
+
+
+def test_the_setting_names_the_parameter_set(answers: Answers) -> None:
+    result = answers["solved"]
+    chosen = replace(result, case=replace(result.case, parameter_set=Named(name="poor")))
+    assert view_of(chosen).setting.endswith("; knocked out: hydrogenase; parameter set: poor")
 
 
 # Equation ----------------------------------------------------------------------------------------
@@ -280,8 +287,15 @@ def test_values_that_were_moved_are_told_in_standard_deviations(answers: Answers
     assert known.sd is not None
     moved = replace(biomass, reconciled=replace(known, value=known.mean + known.sd / 2))
     kept = tuple(moved if item is biomass else item for item in result.coefficients)
-    remarks = view_of(replace(result, coefficients=kept)).remarks
-    assert "Reconciled, moved by s.d.: biomass +0.50." in remarks
+    table = _table(
+        view_of(replace(result, coefficients=kept)), "Measured, reconciled and predicted"
+    )
+    row = _row(table, "biomass")
+    # 0.3 ± 0.02 and 0.1 ± 0.01 over 13 mmol/g/h, which is 0.297 ± 0.0297 with 25.92 g/mol.
+    assert row["measured"] == "0.299±0.0166"
+    assert row["reconciled"] == "0.307"
+    assert row["moved s.d."] == "+0.50"
+    assert row["predicted"] == "0.299"
 
 
 def test_findings_and_assumptions_are_passed_on(answers: Answers) -> None:

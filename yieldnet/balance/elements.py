@@ -10,18 +10,30 @@ from yieldnet.balance.statements import (
     add_statement_rows,
     yield_column,
 )
-from yieldnet.model.binding import composition
-from yieldnet.model.network import BIOMASS
+from yieldnet.chemistry.formula import electron_valences
+from yieldnet.model.binding import CHARGE, composition
+from yieldnet.model.network import BIOMASS, Direction
 from yieldnet.optimum.problem import Bounds, ProblemBuilder
 
 if TYPE_CHECKING:
     from collections.abc import Mapping
 
     from yieldnet.balance.statements import Statements
+    from yieldnet.chemistry.formula import NitrogenReference
     from yieldnet.model.case import Case
     from yieldnet.optimum.problem import Problem
 
-__all__ = ["element_matrix", "element_problem"]
+__all__ = ["balances_by_name", "element_matrix", "element_problem", "nitrogen_reference"]
+
+_WORDS = {
+    "C": "carbon",
+    "N": "nitrogen",
+    "O": "oxygen",
+    "H": "hydrogen",
+    "S": "sulphur",
+    "P": "phosphorus",
+}
+
 
 _NO_RESIDUAL: Mapping[str, Fraction] = {}
 
@@ -88,3 +100,55 @@ def element_problem(
         )
     add_statement_rows(builder, case, statements)
     return builder.build()
+
+
+def nitrogen_reference(case: Case) -> NitrogenReference:
+    """Nitrogen source whose degree of reduction counts as zero: nitrate if only that is fed."""
+    fed = {item.name for item in case.coefficients if item.side is not Direction.PRODUCED}
+    if "nitrate" in fed and not fed & {"ammonia", "urea"}:
+        return "nitrate"
+    if "nitrogen" in fed and not fed & {"ammonia", "urea", "nitrate"}:
+        return "nitrogen"
+    return "ammonia"
+
+
+def balances_by_name(
+    case: Case, growth_residual: Mapping[str, Fraction] = _NO_RESIDUAL
+) -> dict[str, dict[str, Fraction]]:
+    """Contents of every compound under the names an engineer gives them, best known first.
+
+    Parameters
+    ----------
+    case : Case
+        The case.
+    growth_residual : mapping of str to Fraction
+        See :func:`element_matrix`.
+
+    Returns
+    -------
+    dict of str to dict of str to Fraction
+        ``carbon``, ``electrons``, ``nitrogen`` and so on, then compound, to atoms or electron
+        equivalents [mol/mol]. Electrons are left out where an element has no agreed valence.
+
+    Notes
+    -----
+    The electrons are the degree of reduction (Roels 1983), a sum over the elements, so that their
+    balance holds wherever those of the elements do.
+    """
+    table = element_matrix(case, growth_residual)
+    valences: dict[str, Fraction] = {
+        **{name: Fraction(v) for name, v in electron_valences(nitrogen_reference(case)).items()},
+        CHARGE: Fraction(-1),
+    }
+    found = {"carbon": dict(table.get("C", {}))}
+    if all(element in valences for element in table):
+        electrons: dict[str, Fraction] = {}
+        for element, contents in table.items():
+            for name, atoms in contents.items():
+                electrons[name] = electrons.get(name, Fraction(0)) + valences[element] * atoms
+        found["electrons"] = electrons
+    for element in (*_WORDS, *table):
+        word = _WORDS.get(element, element)
+        if element in table and word not in found:
+            found[word] = dict(table[element])
+    return {name: contents for name, contents in found.items() if any(contents.values())}

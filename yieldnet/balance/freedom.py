@@ -58,18 +58,22 @@ class Freedom:
 
 @dataclass(frozen=True, slots=True)
 class CoefficientEquations:
-    """Homogeneous equations between the unknown coefficients, fluxes projected out.
+    """Equations between the unknown coefficients, fluxes projected out.
 
     Parameters
     ----------
     names : tuple of str
-        Unknown coefficients by compound.
+        Unknown coefficients by compound; inside, production is positive.
     rows : tuple of tuple of Fraction
-        Independent equations over them.
+        Left sides of independent equations over them.
+    constants : tuple of Fraction
+        Their right sides, from the basis and all else that is fixed; zero if left out
+        [mol/mol basis].
     """
 
     names: tuple[str, ...]
     rows: tuple[tuple[Fraction, ...], ...]
+    constants: tuple[Fraction, ...] = ()
 
     def free(self, known: Iterable[str] = ()) -> int:
         """Dimension that is left when some coefficients are known [-]."""
@@ -83,6 +87,38 @@ class CoefficientEquations:
             for pivot, row in zip(form.pivots, form.rows, strict=True)
             if not any(entry for j, entry in enumerate(row) if j != pivot)
         )
+
+    def expressed(self, known: Iterable[str]) -> dict[str, tuple[dict[str, Fraction], Fraction]]:
+        """Coefficients that follow from known ones, each as a sum over them and a constant.
+
+        Parameters
+        ----------
+        known : iterable of str
+            Coefficients that are known.
+
+        Returns
+        -------
+        dict of str to (dict of str to Fraction, Fraction)
+            For each that follows and is not known itself: factor of each known one, constant
+            [mol/mol basis]; inside, production is positive.
+        """
+        given = [name for name in self.names if name in set(known)]
+        hidden = [name for name in self.names if name not in given]
+        order = [self.names.index(name) for name in (*hidden, *given)]
+        table = [
+            (*(row[place] for place in order), constant)
+            for row, constant in zip(self.rows, self.constants, strict=True)
+        ]
+        form = eliminate(table, len(order) + 1)
+        size = len(hidden)
+        return {
+            hidden[pivot]: (
+                {name: -row[size + k] for k, name in enumerate(given) if row[size + k]},
+                row[-1],
+            )
+            for pivot, row in zip(form.pivots, form.rows, strict=True)
+            if pivot < size and not any(row[j] for j in range(size) if j != pivot)
+        }
 
     def with_known(self, known: Iterable[str]) -> list[tuple[Fraction, ...]]:
         """The equations, with one more for each coefficient that is known."""
@@ -121,19 +157,28 @@ def coefficient_equations(case: Case, problem: Problem) -> CoefficientEquations:
         j for j, column in enumerate(problem.columns) if j not in wanted and not column.bounds.fixed
     ]
     place = {j: at for at, j in enumerate([*others, *kept])}
+    last = len(place)
     rows = []
     for row, entries in zip(problem.rows, problem.matrix.rows, strict=True):
         if row.bounds.fixed:
-            line = [Fraction(0)] * len(place)
+            assert row.bounds.low is not None
+            line = [Fraction(0)] * last + [row.bounds.low]
             for j, value in entries:
                 if j in place:
                     line[place[j]] = value
+                else:
+                    fixed = problem.columns[j].bounds.low
+                    assert fixed is not None
+                    line[last] -= value * fixed
             rows.append(line)
-    form = eliminate(rows, len(place))
+    form = eliminate(rows, last + 1)
     first = len(others)
+    # A pivot in the last column would say 0 = 1: then nothing is feasible, which is told elsewhere.
+    kept_rows = [
+        row for pivot, row in zip(form.pivots, form.rows, strict=True) if first <= pivot < last
+    ]
     return CoefficientEquations(
         names,
-        tuple(
-            row[first:] for pivot, row in zip(form.pivots, form.rows, strict=True) if pivot >= first
-        ),
+        tuple(row[first:last] for row in kept_rows),
+        tuple(row[last] for row in kept_rows),
     )

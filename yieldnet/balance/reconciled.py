@@ -1,10 +1,11 @@
 """The reconciled point: the measured values moved as little as the balances demand.
 
 Of all points of a problem with every measured coefficient inside its band, the one with the least
-sum of squared deviations in standard deviations. In the space of the measured coefficients the
-feasible points form a polytope, and the sum is a squared distance in it: Wolfe's method finds the
-nearest point from a few corners, each corner being the optimum of a linear problem. Its equations
-are solved in fractions, so the point is exact, and it is unique.
+sum of squared deviations in standard deviations; where errors are correlated, the sum is that of
+the inverse covariance. In the space of the measured coefficients the feasible points form a
+polytope, and the sum is a squared distance in it: Wolfe's method finds the nearest point from a few
+corners, each corner being the optimum of a linear problem. Its equations are solved in fractions,
+so the point is exact, and it is unique.
 
 References
 ----------
@@ -13,7 +14,6 @@ Wolfe, P. (1976) Finding the nearest point in a polytope, Mathematical Programmi
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from fractions import Fraction
 from typing import TYPE_CHECKING
 
@@ -25,58 +25,16 @@ from yieldnet.optimum.proof import Status
 if TYPE_CHECKING:
     from collections.abc import Callable, Mapping, Sequence
 
+    from yieldnet.balance.covariance import Pooled
     from yieldnet.balance.statements import Statements
-    from yieldnet.model.case import Case, Measurement
+    from yieldnet.foundation.exact import Matrix
+    from yieldnet.model.case import Case
     from yieldnet.optimum.problem import Problem
     from yieldnet.optimum.proof import Optimiser
 
-__all__ = ["Target", "pool", "reconciled_point"]
+__all__ = ["nearest_point", "reconciled_point"]
 
 Vector = tuple[Fraction, ...]
-
-
-@dataclass(frozen=True, slots=True)
-class Target:
-    """Where a measured coefficient wants to be, and how much it weighs.
-
-    Parameters
-    ----------
-    value : Fraction
-        Weighted mean of the measured values, positive on the declared side [mol/mol].
-    weight : Fraction
-        Sum of 1/s.d.^2 [(mol/mol)^-2].
-    """
-
-    value: Fraction
-    weight: Fraction
-
-    @property
-    def variance(self) -> Fraction:
-        """Square of the pooled standard deviation [(mol/mol)^2]."""
-        return 1 / self.weight
-
-
-def pool(measured: Sequence[Measurement]) -> dict[str, Target]:
-    """Weighted mean of the values of each coefficient; exact values are left out.
-
-    Parameters
-    ----------
-    measured : sequence of Measurement
-        Measured values.
-
-    Returns
-    -------
-    dict of str to Target
-        By compound, in order of appearance.
-    """
-    sums: dict[str, tuple[Fraction, Fraction]] = {}
-    exact = {item.compound for item in measured if not item.sd}
-    for item in measured:
-        if item.sd and item.compound not in exact:
-            weight = 1 / item.sd**2
-            total, moment = sums.get(item.compound, (Fraction(0), Fraction(0)))
-            sums[item.compound] = (total + weight, moment + weight * item.value)
-    return {name: Target(moment / total, total) for name, (total, moment) in sums.items()}
 
 
 def reconciled_point(
@@ -100,40 +58,76 @@ def reconciled_point(
     dict of str to Fraction or None
         Value by compound, positive on its side [mol/mol].
     """
-    banded = with_bands(problem, statements)
-    targets = pool(statements.measured)
-    signs = {item.name: side_sign(item.side) for item in case.coefficients if item.name in targets}
-    names = tuple(targets)
-
-    def corner(gradient: Vector) -> Vector | None:
-        objective = {
-            yield_column(name): signs[name] * targets[name].weight * slope
-            for name, slope in zip(names, gradient, strict=True)
-        }
-        answer = optimiser.optimise(banded, objective, maximise=False)
-        if answer.status is Status.INFEASIBLE:
-            return None
-        return tuple(
-            signs[name] * answer[yield_column(name)] - targets[name].value for name in names
-        )
-
-    weights = tuple(targets[name].weight for name in names)
-    start = corner(tuple(Fraction(0) for _ in names))
-    if start is None:
+    point = nearest_point(optimiser, with_bands(problem, statements), case, statements.pooled())
+    if point is None:
         return None
-    offset = _nearest(start, corner, weights) if names else ()
-    point = {name: targets[name].value + move for name, move in zip(names, offset, strict=True)}
     for item in statements.measured:
         if not item.sd:
             point[item.compound] = item.value
     return point
 
 
-def _dot(left: Vector, right: Vector, weights: Vector) -> Fraction:
-    return sum((a * b * w for a, b, w in zip(left, right, weights, strict=True)), Fraction(0))
+def nearest_point(
+    optimiser: Optimiser, problem: Problem, case: Case, targets: Pooled
+) -> dict[str, Fraction] | None:
+    """Point of a problem whose coefficients are nearest to what is wanted of them.
+
+    Parameters
+    ----------
+    optimiser : Optimiser
+        Solves the linear problems.
+    problem : Problem
+        What a point must keep.
+    case : Case
+        Says on which side a coefficient is positive.
+    targets : Pooled
+        What is wanted, and how much a deviation weighs.
+
+    Returns
+    -------
+    dict of str to Fraction or None
+        Value of each coefficient with a target, positive on its side [mol/mol]; ``None`` if no
+        point keeps the problem.
+    """
+    signs = {item.name: side_sign(item.side) for item in case.coefficients if item.name in targets}
+    names = targets.names
+    weights = targets.precision()
+
+    def corner(offset: Vector) -> Vector | None:
+        objective = {
+            yield_column(name): signs[name] * slope
+            for name, slope in zip(names, _weighted(weights, offset), strict=True)
+        }
+        answer = optimiser.optimise(problem, objective, maximise=False)
+        if answer.status is Status.INFEASIBLE:
+            return None
+        return tuple(
+            signs[name] * answer[yield_column(name)] - target
+            for name, target in zip(names, targets.values, strict=True)
+        )
+
+    start = corner(tuple(Fraction(0) for _ in names))
+    if start is None:
+        return None
+    offset = _nearest(start, corner, weights) if names else ()
+    return {
+        name: target + move
+        for name, target, move in zip(names, targets.values, offset, strict=True)
+    }
 
 
-def _nearest(start: Vector, corner: Callable[[Vector], Vector | None], weights: Vector) -> Vector:
+def _weighted(weights: Matrix, vector: Vector) -> Vector:
+    return tuple(
+        sum((w * b for w, b in zip(row, vector, strict=True) if w), Fraction(0)) for row in weights
+    )
+
+
+def _dot(left: Vector, right: Vector, weights: Matrix) -> Fraction:
+    pairs = zip(left, _weighted(weights, right), strict=True)
+    return sum((a * b for a, b in pairs), Fraction(0))
+
+
+def _nearest(start: Vector, corner: Callable[[Vector], Vector | None], weights: Matrix) -> Vector:
     """Point of the polytope nearest to the origin, by Wolfe's method in fractions."""
     corners: list[Vector] = [start]
     shares: list[Fraction] = [Fraction(1)]
@@ -172,7 +166,7 @@ def _combine(corners: Sequence[Vector], shares: Sequence[Fraction]) -> Vector:
     )
 
 
-def _affine_nearest(corners: Sequence[Vector], weights: Vector) -> list[Fraction]:
+def _affine_nearest(corners: Sequence[Vector], weights: Matrix) -> list[Fraction]:
     """Shares, summing to 1, of the point of the affine hull nearest to the origin."""
     size = len(corners)
     rows = [[_dot(a, b, weights) for b in corners] + [Fraction(1), Fraction(0)] for a in corners]

@@ -10,6 +10,7 @@ from dataclasses import dataclass
 from fractions import Fraction
 from typing import TYPE_CHECKING
 
+from yieldnet.balance.covariance import pool
 from yieldnet.foundation.exact import root_of_square
 from yieldnet.model.case import BAND, Measurement
 from yieldnet.model.network import BIOMASS, Direction
@@ -18,7 +19,8 @@ from yieldnet.optimum.problem import FREE, Bounds, crossing_bounds
 if TYPE_CHECKING:
     from collections.abc import Mapping
 
-    from yieldnet.model.case import Case, Demand, OverallCoefficient
+    from yieldnet.balance.covariance import Pooled
+    from yieldnet.model.case import Case, Correlation, Demand, OverallCoefficient
     from yieldnet.optimum.problem import Problem, ProblemBuilder
 
 __all__ = [
@@ -53,11 +55,18 @@ class Statements:
         Those of the aim's own coefficient.
     demands : tuple of Demand
         As in the case.
+    correlations : tuple of Correlation
+        As in the case.
     """
 
     measured: tuple[Measurement, ...]
     set_aside: tuple[Measurement, ...]
     demands: tuple[Demand, ...]
+    correlations: tuple[Correlation, ...] = ()
+
+    def pooled(self) -> Pooled:
+        """One value for each measured coefficient, with the covariance of all."""
+        return pool(self.measured, self.correlations)
 
     def of(self, compound: str) -> tuple[Measurement, ...]:
         """Measured values of one coefficient, the aim's own included."""
@@ -103,6 +112,7 @@ def statements_of(case: Case) -> Statements:
         measured=tuple(item for item in found if item.compound != own),
         set_aside=tuple(item for item in found if item.compound == own),
         demands=case.demands,
+        correlations=case.correlations,
     )
 
 

@@ -3,21 +3,29 @@
 from __future__ import annotations
 
 import sys
+from contextlib import nullcontext
+from pathlib import Path
 from typing import TYPE_CHECKING, Any, NoReturn
 
 import click
 
 if TYPE_CHECKING:
     from collections.abc import Callable, Sequence
+    from contextlib import AbstractContextManager
 
     from yieldnet.foundation.errors import YieldnetError
     from yieldnet.foundation.findings import Finding
 
 __all__ = [
+    "check_picture",
     "csv_option",
     "end",
     "engine_option",
+    "force_option",
     "json_option",
+    "level_option",
+    "picture_option",
+    "progress_if_watched",
     "refuse",
     "unit_option",
     "write_csv",
@@ -40,6 +48,18 @@ unit_option = click.option(
     default="mol/mol",
     show_default=True,
     help="Unit of the coefficient table.",
+)
+
+picture_option = click.option(
+    "--picture", type=click.Path(path_type=Path), help="Draw it, .svg or .png."
+)
+force_option = click.option("--force", is_flag=True, help="Let what is written replace a file.")
+level_option = click.option(
+    "--level",
+    type=click.FloatRange(0, 1, min_open=True, max_open=True),
+    default=0.95,
+    show_default=True,
+    help="Probability with which the test of the data passes correct ones.",
 )
 
 
@@ -81,3 +101,26 @@ def write_csv(header: Sequence[str], rows: Sequence[Sequence[str]]) -> None:
     writer = csv.writer(sys.stdout, lineterminator="\n")
     writer.writerow(header)
     writer.writerows(rows)
+
+
+def progress_if_watched(
+    label: str,
+) -> AbstractContextManager[Callable[[int, int], None] | None]:
+    """Progress on the error stream, if somebody is looking."""
+    if not sys.stderr.isatty():
+        return nullcontext(None)
+    from yieldnet.report.text import progress
+
+    return progress(label)
+
+
+def check_picture(picture: Path | None, force: bool) -> None:
+    """Wrong names of pictures are told before the work, not after it."""
+    if picture is None:
+        return
+    from yieldnet.report.picture_file import PICTURES
+
+    if picture.suffix not in PICTURES:
+        raise click.UsageError(f"--picture takes a name that ends in {' or '.join(PICTURES)}.")
+    if picture.exists() and not force:
+        raise click.UsageError(f"'{picture}' is there already; --force replaces it.")

@@ -5,7 +5,13 @@ from __future__ import annotations
 import click
 
 from yieldnet.cli.answer import show
-from yieldnet.cli.options import csv_option, engine_option, json_option, unit_option
+from yieldnet.cli.options import (
+    csv_option,
+    engine_option,
+    json_option,
+    level_option,
+    unit_option,
+)
 
 __all__ = ["command"]
 
@@ -16,6 +22,7 @@ __all__ = ["command"]
 @click.option("--fluxes", is_flag=True, help="Show the fluxes at the aim.")
 @click.option("--proof", is_flag=True, help="Show the proof that nothing better is possible.")
 @click.option("--order", default="", help="Second ladder: rungs below elements, comma between.")
+@level_option
 @engine_option
 @csv_option
 @json_option
@@ -25,6 +32,7 @@ def command(
     fluxes: bool,
     proof: bool,
     order: str,
+    level: float,
     engine: str,
     as_csv: bool,
     as_json: bool,
@@ -37,7 +45,7 @@ def command(
 
     rungs = [rung.strip() for rung in order.split(",") if rung.strip()]
     show(
-        lambda: predict(case, engine=engine, fluxes=fluxes, proof=proof, order=rungs),
+        lambda: predict(case, engine=engine, fluxes=fluxes, proof=proof, order=rungs, level=level),
         unit,
         as_csv,
         as_json,

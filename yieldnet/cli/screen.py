@@ -3,16 +3,17 @@
 from __future__ import annotations
 
 import sys
-from contextlib import nullcontext
-from typing import TYPE_CHECKING
 
 import click
 
-from yieldnet.cli.options import csv_option, engine_option, json_option, refuse, write_csv
-
-if TYPE_CHECKING:
-    from collections.abc import Callable
-    from contextlib import AbstractContextManager
+from yieldnet.cli.options import (
+    csv_option,
+    engine_option,
+    json_option,
+    progress_if_watched,
+    refuse,
+    write_csv,
+)
 
 __all__ = ["command"]
 
@@ -59,7 +60,7 @@ def command(
     from yieldnet.verbs import screen
 
     try:
-        with _progress() as tick:
+        with progress_if_watched("knock-outs") as tick:
             result = screen(
                 case,
                 depth=depth,
@@ -99,12 +100,3 @@ def command(
             print_findings(out, result.findings)
     if result.interrupted:
         sys.exit(1)
-
-
-def _progress() -> AbstractContextManager[Callable[[int, int], None] | None]:
-    """Progress on the error stream, if somebody is looking."""
-    if not sys.stderr.isatty():
-        return nullcontext(None)
-    from yieldnet.report.text import progress
-
-    return progress("knock-outs")

@@ -2,11 +2,24 @@
 
 from __future__ import annotations
 
-from pathlib import Path
+from typing import TYPE_CHECKING
 
 import click
 
-from yieldnet.cli.options import csv_option, end, engine_option, json_option, refuse, write_csv
+from yieldnet.cli.options import (
+    check_picture,
+    csv_option,
+    end,
+    engine_option,
+    force_option,
+    json_option,
+    picture_option,
+    refuse,
+    write_csv,
+)
+
+if TYPE_CHECKING:
+    from pathlib import Path
 
 __all__ = ["command"]
 
@@ -20,8 +33,8 @@ __all__ = ["command"]
     type=click.Choice(["growth-rate", "oxygen"]),
     help="Another axis along x: growth rates at the uptake of the case, or oxygen.",
 )
-@click.option("--picture", type=click.Path(path_type=Path), help="Draw it, .svg or .png.")
-@click.option("--force", is_flag=True, help="Let the picture replace a file.")
+@picture_option
+@force_option
 @engine_option
 @csv_option
 @json_option
@@ -47,14 +60,7 @@ def command(
 
     if over and x:
         raise click.UsageError("--over is an axis along x: leave --x out beside it.")
-    if picture is not None:
-        # Wrong names are told before the work, not after it.
-        from yieldnet.report.pictures import PICTURES
-
-        if picture.suffix not in PICTURES:
-            raise click.UsageError(f"--picture takes a name that ends in {' or '.join(PICTURES)}.")
-        if picture.exists() and not force:
-            raise click.UsageError(f"'{picture}' is there already; --force replaces it.")
+    check_picture(picture, force)
     try:
         result = tradeoff(cases, x=x, y=y, over=over or "", engine=engine)
         if picture is not None:

@@ -20,10 +20,14 @@ __all__ = [
     "MAX_DIGITS",
     "MAX_EXPONENT",
     "Elimination",
+    "Matrix",
     "NumberTextError",
     "WrittenNumber",
     "decimal_text",
     "eliminate",
+    "inverse",
+    "is_positive_definite",
+    "product",
     "read_number",
     "root_of_square",
 ]
@@ -259,3 +263,97 @@ def eliminate(rows: Sequence[Sequence[Fraction]], columns: int) -> Elimination:
         kept.append(row)
         pivots.append(next(j for j, entry in enumerate(row) if entry))
     return Elimination(tuple(kept), tuple(pivots), columns)
+
+
+Matrix = tuple[tuple[Fraction, ...], ...]
+"""Rows of fractions."""
+
+
+def inverse(matrix: Sequence[Sequence[Fraction]]) -> Matrix:
+    """Inverse of a square matrix in exact fractions.
+
+    Parameters
+    ----------
+    matrix : sequence of sequence of Fraction
+        Square, row by row.
+
+    Returns
+    -------
+    tuple of tuple of Fraction
+        Its inverse.
+
+    Raises
+    ------
+    ZeroDivisionError
+        If the matrix is singular.
+
+    Examples
+    --------
+    >>> inverse([[Fraction(2), Fraction(0)], [Fraction(0), Fraction(4)]])[1][1]
+    Fraction(1, 4)
+    """
+    size = len(matrix)
+    one, zero = Fraction(1), Fraction(0)
+    wide = [(*row, *(one if i == j else zero for j in range(size))) for i, row in enumerate(matrix)]
+    form = eliminate(wide, 2 * size)
+    if form.pivots != tuple(range(size)):
+        raise ZeroDivisionError("a singular matrix has no inverse")
+    return tuple(row[size:] for row in form.rows)
+
+
+def product(left: Sequence[Sequence[Fraction]], right: Sequence[Sequence[Fraction]]) -> Matrix:
+    """Product of two matrices in exact fractions.
+
+    Parameters
+    ----------
+    left, right : sequence of sequence of Fraction
+        Row by row; as many columns on the left as rows on the right.
+
+    Returns
+    -------
+    tuple of tuple of Fraction
+        Their product.
+
+    Examples
+    --------
+    >>> product([[Fraction(1), Fraction(2)]], [[Fraction(3)], [Fraction(4)]])
+    ((Fraction(11, 1),),)
+    """
+    columns = tuple(zip(*right, strict=True))
+    return tuple(
+        tuple(
+            sum((a * b for a, b in zip(row, column, strict=True) if a and b), Fraction(0))
+            for column in columns
+        )
+        for row in left
+    )
+
+
+def is_positive_definite(matrix: Sequence[Sequence[Fraction]]) -> bool:
+    """Whether a symmetric matrix is positive definite, by exact pivots without exchanges.
+
+    Parameters
+    ----------
+    matrix : sequence of sequence of Fraction
+        Symmetric, row by row.
+
+    Returns
+    -------
+    bool
+        ``False`` as soon as a pivot is not positive.
+
+    Examples
+    --------
+    >>> is_positive_definite([[Fraction(1), Fraction(1)], [Fraction(1), Fraction(1)]])
+    False
+    """
+    rows = [list(row) for row in matrix]
+    for i, row in enumerate(rows):
+        if row[i] <= 0:
+            return False
+        for other in rows[i + 1 :]:
+            if other[i]:
+                share = other[i] / row[i]
+                for j in range(i, len(rows)):
+                    other[j] -= share * row[j]
+    return True

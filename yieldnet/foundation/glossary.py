@@ -53,15 +53,39 @@ _WORDS = {
     "worth": "In a proof, what one mol of a compound could bring at most, in mol of the aim.",
     "finding": "Something wrong or doubtful in a file: code, severity, place, both sides, way out.",
     "knock-out": "A reaction or group switched off in a case.",
+    "parameter set": "Named values of some parameters of a network, which a case chooses together.",
+    "meant for": "Substrates and products that a network was written for; an answer beyond them"
+    " carries a warning.",
+    "reproduces": "Small cases in a network file, each with the best value that must come out and"
+    " its source.",
     "strain": "A named preset of a network: reactions or groups switched off.",
     "maintenance": "ATP spent on staying alive, per g dry weight and h.",
+    "true yield": "Yield that growth would have without maintenance: 1/Y = 1/Y_true + m_S/mu, for a"
+    " range of growth rates in which no limit changes.",
+    "maintenance coefficient": "Substrate that maintenance takes, m_S, per g dry weight and h.",
+    "Y_ATP": "Dry weight made per ATP that the growth equation and maintenance spend, in g/mol.",
+    "macromolecule": "What biomass is put together from: protein, RNA, DNA, lipid, carbohydrate and"
+    " others, each with its share of the dry weight.",
+    "monomer": "Building block of a macromolecule: an amino acid, a nucleotide, a lipid.",
     "degree of reduction": "Available electrons of a compound, with its nitrogen source, sulfate"
     " and phosphate counted as zero.",
     "P/O ratio": "ATP made per pair of electrons passed to oxygen.",
     "C-mol": "Amount of a compound that holds one mol of carbon.",
     "recovery": "Share of the carbon, or of the available electrons, of what goes in that is found"
     " in what comes out.",
+    "heat of combustion": "Heat given off as a compound burns to carbon dioxide gas, liquid water"
+    " and nitrogen gas; to ammonia it is less by 383 kJ for each nitrogen.",
+    "oxygen rule": "Heat from the oxygen taken up: 440 kJ per mol by calorimetry, 460 in"
+    " textbooks.",
+    "Gibbs energy": "Energy that a reaction can give off as work at its pH, temperature and"
+    " concentrations; negative runs by itself, positive runs uphill.",
+    "dissipation": "Gibbs energy that growth gives off per C-mol of biomass.",
     "RQ": "Respiratory quotient: carbon dioxide given off per oxygen taken up.",
+    "titre": "Product in the broth at harvest [g/L].",
+    "kLa": "How fast a vessel passes oxygen on, per driving force [1/h].",
+    "cooling duty": "Heat that must be taken off: of the cells, of neutralisation and of the"
+    " stirrer, less evaporation.",
+    "break-even yield": "Yield at which raw materials cost as much as the product brings.",
     "ash": "Mineral part of the dry weight, as a fraction of the whole dry weight.",
     "guaranteed product": "The least product at most growth: what the cell must make if it grows as"
     " well as it can.",

@@ -12,6 +12,7 @@ if TYPE_CHECKING:
     from yieldnet.foundation.findings import Finding, SourceSpan
     from yieldnet.model.equation import Equation
     from yieldnet.model.network import Compound, Direction, Network
+    from yieldnet.model.plant import Plant
 
 __all__ = [
     "BAND",
@@ -19,7 +20,9 @@ __all__ = [
     "Aim",
     "AimDirection",
     "Case",
+    "Concentration",
     "Condition",
+    "Correlation",
     "Demand",
     "EnergySurplus",
     "Measurement",
@@ -79,7 +82,7 @@ class Condition:
     Parameters
     ----------
     value : Fraction
-        Growth rate [1/h], substrate uptake [mol/g/h] or temperature [degC].
+        Growth rate [1/h], substrate uptake [mol/g/h], temperature [degC] or pH [-].
     sd : Fraction or None
         Standard deviation in the same unit; ``None`` if exact.
     text : str
@@ -90,6 +93,32 @@ class Condition:
 
     value: Fraction
     sd: Fraction | None
+    text: str
+    span: SourceSpan | None = field(default=None, compare=False, repr=False)
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Concentration:
+    """How much of a compound there is, for the Gibbs energy of reactions.
+
+    Parameters
+    ----------
+    compound : str
+        Which compound.
+    low, high : Fraction
+        Least and most; the same where one value is written [mol/L], of a gas [bar].
+    gas : bool
+        Whether it is the partial pressure of a gas.
+    text : str
+        As written.
+    span : SourceSpan or None
+        Where it was written.
+    """
+
+    compound: str
+    low: Fraction
+    high: Fraction
+    gas: bool
     text: str
     span: SourceSpan | None = field(default=None, compare=False, repr=False)
 
@@ -128,6 +157,31 @@ class Measurement:
     unit: str = "mol/mol"
     factor: Fraction = Fraction(1)
     unit_given: bool = True
+    span: SourceSpan | None = field(default=None, compare=False, repr=False)
+
+    @property
+    def is_direct(self) -> bool:
+        """Whether it stands under ``measured`` in the case, rather than following from others."""
+        return self.label == f"measured {self.compound}"
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Correlation:
+    """Correlation of the errors of two measured values.
+
+    Parameters
+    ----------
+    first, second : str
+        The two coefficients by compound.
+    value : Fraction
+        Correlation coefficient of their errors, between -1 and 1 [-].
+    span : SourceSpan or None
+        Where it was written.
+    """
+
+    first: str
+    second: str
+    value: Fraction
     span: SourceSpan | None = field(default=None, compare=False, repr=False)
 
 
@@ -178,7 +232,7 @@ class Aim:
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Named:
-    """A name with the place where it was written: a knock-out, a strain."""
+    """A name with the place where it was written: a knock-out, a strain, a parameter set."""
 
     name: str
     span: SourceSpan | None = field(default=None, compare=False, repr=False)
@@ -204,10 +258,14 @@ class Case:
         Every compound of the equation, in its order.
     strain : Named or None
         Chosen preset.
-    growth_rate, substrate_uptake, temperature : Condition or None
-        Conditions [1/h], [mol/g/h], [degC].
+    growth_rate, substrate_uptake, temperature, ph : Condition or None
+        Conditions [1/h], [mol/g/h], [degC], [-].
+    concentrations : tuple of Concentration
+        In written order.
     measured : tuple of Measurement
         In written order.
+    correlations : tuple of Correlation
+        Of the errors of measured values; those of all other pairs are independent.
     demands : tuple of Demand
         In written order.
     aim : Aim or None
@@ -218,10 +276,14 @@ class Case:
         Whether the file says so, rather than the default.
     knock_outs : tuple of Named
         Reactions or groups switched off.
+    parameter_set : Named or None
+        Chosen parameter set of the network.
     parameters : tuple of (str, Fraction)
-        Other values of network parameters.
+        Other values of network parameters; they count before those of the set.
     parameter_spans : tuple of (str, SourceSpan)
         Where those were written.
+    plant : Plant or None
+        What a plant is to make.
     file : str
         Path as the user gave it.
     findings : tuple of Finding
@@ -241,16 +303,21 @@ class Case:
     growth_rate: Condition | None = None
     substrate_uptake: Condition | None = None
     temperature: Condition | None = None
+    ph: Condition | None = None
+    concentrations: tuple[Concentration, ...] = ()
     measured: tuple[Measurement, ...] = ()
+    correlations: tuple[Correlation, ...] = ()
     demands: tuple[Demand, ...] = ()
     aim: Aim | None = None
     energy_surplus: EnergySurplus = EnergySurplus.LOST
     energy_surplus_given: bool = False
     knock_outs: tuple[Named, ...] = ()
+    parameter_set: Named | None = None
     parameters: tuple[tuple[str, Fraction], ...] = ()
     parameter_spans: tuple[tuple[str, SourceSpan], ...] = field(
         default=(), compare=False, repr=False
     )
+    plant: Plant | None = None
     file: str = field(default="", compare=False)
     findings: tuple[Finding, ...] = field(default=(), compare=False, repr=False)
     span: SourceSpan | None = field(default=None, compare=False, repr=False)
@@ -288,6 +355,20 @@ class Case:
             item.written is None or item.written.last_place is not None
             for item in self.coefficients
         )
+
+    def overrides(self) -> dict[str, Fraction]:
+        """Parameter values that replace those of the network: of the set, then the case's own."""
+        chosen = None
+        if self.network is not None and self.parameter_set is not None:
+            chosen = self.network.parameter_set(self.parameter_set.name)
+        return {**dict(chosen.values if chosen else ()), **dict(self.parameters)}
+
+    def override_spans(self) -> dict[str, SourceSpan]:
+        """Where the case wrote each value of :meth:`overrides`, or chose its set."""
+        own = dict(self.parameter_spans)
+        by_set = self.parameter_set.span if self.parameter_set else None
+        places = {name: own.get(name, by_set) for name in self.overrides()}
+        return {name: span for name, span in places.items() if span is not None}
 
     def with_parameter(self, name: str, value: Fraction) -> Case:
         """The case with another value of one network parameter.

@@ -24,8 +24,10 @@ __all__ = [
     "Direction",
     "Growth",
     "Maintenance",
+    "MeantFor",
     "Network",
     "Parameter",
+    "ParameterSet",
     "Reaction",
     "Strain",
 ]
@@ -118,6 +120,49 @@ class Parameter:
     unit: str = ""
     about: str = ""
     source: str = ""
+    span: SourceSpan | None = field(default=None, compare=False, repr=False)
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class ParameterSet:
+    """Values of some parameters that a case can choose together by a name.
+
+    Parameters
+    ----------
+    name : str
+        Name by which a case chooses it.
+    values : tuple of (str, Fraction)
+        Value of each parameter, in the unit of that parameter.
+    maintenance : Maintenance or None
+        Maintenance that goes with them; ``None`` to keep that of the network.
+    about, source : str
+        As written.
+    span : SourceSpan or None
+        Where it was written.
+    """
+
+    name: str
+    values: tuple[tuple[str, Fraction], ...]
+    maintenance: Maintenance | None = None
+    about: str = ""
+    source: str = ""
+    span: SourceSpan | None = field(default=None, compare=False, repr=False)
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class MeantFor:
+    """What a network was written to answer; beyond it an answer carries a warning.
+
+    Parameters
+    ----------
+    substrates, products : tuple of str
+        Crossing compounds, in written order.
+    span : SourceSpan or None
+        Where it was written.
+    """
+
+    substrates: tuple[str, ...]
+    products: tuple[str, ...]
     span: SourceSpan | None = field(default=None, compare=False, repr=False)
 
 
@@ -231,6 +276,10 @@ class Network:
         In written order, growth not included.
     parameters : tuple of Parameter
         In written order.
+    parameter_sets : tuple of ParameterSet
+        Values of some parameters that a case can choose together.
+    meant_for : MeantFor or None
+        Substrates and products that it was written for; ``None`` if it does not say.
     strains : tuple of Strain
         Named presets.
     growth : Growth or None
@@ -252,6 +301,8 @@ class Network:
     reactions: tuple[Reaction, ...]
     about: str = ""
     parameters: tuple[Parameter, ...] = ()
+    parameter_sets: tuple[ParameterSet, ...] = ()
+    meant_for: MeantFor | None = None
     strains: tuple[Strain, ...] = ()
     growth: Growth | None = None
     maintenance: Maintenance | None = None
@@ -299,6 +350,10 @@ class Network:
     def strain(self, name: str) -> Strain | None:
         """Strain by name."""
         return next((item for item in self.strains if item.name == name), None)
+
+    def parameter_set(self, name: str) -> ParameterSet | None:
+        """Parameter set by name."""
+        return next((item for item in self.parameter_sets if item.name == name), None)
 
     def without(self, *names: str) -> Network:
         """The network with reactions or groups taken out.

@@ -16,7 +16,15 @@ if TYPE_CHECKING:
     from yieldnet.model.binding import BoundNetwork
     from yieldnet.model.case import Case
 
-__all__ = ["assumptions_of"]
+__all__ = ["KEPT", "assumptions_of"]
+
+KEPT = {
+    "temperature": "the temperature is kept and not used here",
+    "pH": "the pH is kept and not used here",
+    "concentrations": "the concentrations are kept and not used here",
+    "plant": "the section 'plant' is kept and not used here",
+}
+"""What balances and network do not look at, in words."""
 
 
 def assumptions_of(
@@ -63,11 +71,17 @@ def assumptions_of(
     if case.temperature is not None:
         found.append(
             Assumption(
-                text="the temperature is kept and not used here",
+                text=KEPT["temperature"],
                 value=case.temperature.value,
                 unit="degC",
             )
         )
+    if case.ph is not None:
+        found.append(Assumption(text=KEPT["pH"], value=case.ph.value))
+    if case.concentrations:
+        found.append(Assumption(text=KEPT["concentrations"]))
+    if case.plant is not None:
+        found.append(Assumption(text=KEPT["plant"]))
     bare = [f"measured {item.compound}" for item in case.measured if not item.unit_given]
     bare += [f"demand {item.compound}" for item in case.demands if not item.unit_given]
     if bare:
@@ -145,18 +159,28 @@ def _of_network(case: Case, bound: BoundNetwork) -> list[Assumption]:
             if isinstance(term.coefficient, Expression)
             for name in term.coefficient.names()
         }
-    changed = dict(case.parameters)
+    chosen = network.parameter_set(case.parameter_set.name) if case.parameter_set else None
+    if chosen is not None:
+        about = f": {' '.join(chosen.about.split())}" if chosen.about else ""
+        found.append(Assumption(text=f"parameter set '{chosen.name}'{about}", source=chosen.source))
+    own = dict(case.parameters)
+    of_the_set = dict(chosen.values) if chosen is not None else {}
     for parameter in network.parameters:
-        if parameter.name in used:
-            here = " (set in the case)" if parameter.name in changed else ""
-            found.append(
-                Assumption(
-                    text=f"parameter {parameter.name}{here}",
-                    value=parameter.value,
-                    unit=parameter.unit,
-                    source="" if here else parameter.source,
-                )
+        if parameter.name not in used:
+            continue
+        here, source = "", parameter.source
+        if parameter.name in own:
+            here, source = " (set in the case)", ""
+        elif chosen is not None and parameter.name in of_the_set:
+            here, source = f" (parameter set '{chosen.name}')", chosen.source
+        found.append(
+            Assumption(
+                text=f"parameter {parameter.name}{here}",
+                value=parameter.value,
+                unit=parameter.unit,
+                source=source,
             )
+        )
     listed = {item.name for item in case.compounds}
     closed = [name for name, _ in network.crossing if name not in listed]
     if closed:

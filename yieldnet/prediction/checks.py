@@ -5,12 +5,12 @@ from __future__ import annotations
 from fractions import Fraction
 from typing import TYPE_CHECKING
 
-from yieldnet.balance.reconciled import pool, reconciled_point
+from yieldnet.balance.reconciled import reconciled_point
 from yieldnet.balance.statements import GROWTH_OVER_UPTAKE, band
 from yieldnet.foundation.exact import root_of_square
 from yieldnet.foundation.findings import Findings, Severity
 from yieldnet.model.case import AimDirection
-from yieldnet.model.network import BIOMASS, GROWTH
+from yieldnet.model.network import BIOMASS, GROWTH, Direction
 from yieldnet.optimum.problem import flux_bounds
 from yieldnet.optimum.proof import Status
 from yieldnet.prediction.layers import flux_column, switched_off
@@ -26,6 +26,7 @@ if TYPE_CHECKING:
 
 __all__ = [
     "beyond_the_best",
+    "beyond_the_scope",
     "growth_conditions",
     "idle_switches",
     "moved_values",
@@ -42,6 +43,53 @@ def growth_conditions(case: Case) -> Findings:
             "a growth rate is given, and biomass is not in the overall equation",
             case.growth_rate.span,
             hint="Add '+ ? biomass' to the right side, or leave the growth rate out.",
+        )
+    return findings
+
+
+def beyond_the_scope(case: Case) -> Findings:
+    """A basis or an aim that the network was not written for, where it says what it is meant for.
+
+    An aim at a compound that is taken up asks how much is needed, not for a product, and an aim at
+    an energy carrier names no crossing compound; neither is judged.
+    """
+    findings = Findings()
+    network, aim = case.network, case.aim
+    if network is None or network.meant_for is None:
+        return findings
+    meant = network.meant_for
+    way_out = (
+        "Take a network that is meant for it ('yieldnet networks' lists those that ship), or check"
+        f" that this one holds what {{}} needs and add it to '{{}}' under 'meant for' of"
+        f" '{network.title}'."
+    )
+    # The basis is written where the coefficients of the equation are.
+    equation = (item.span for item in case.coefficients if item.side is not Direction.EITHER)
+    if case.basis.name not in meant.substrates:
+        findings.add(
+            "YN516",
+            f"the network is not meant for the substrate {case.basis.name!r}",
+            next(equation, case.span),
+            left=f"basis {case.basis.name}",
+            right=f"meant for the substrates {', '.join(meant.substrates)}",
+            hint=way_out.format(case.basis.name, "substrates"),
+            severity=Severity.WARNING,
+        )
+    coefficient = case.coefficient(aim.compound) if aim is not None else None
+    if (
+        aim is not None
+        and coefficient is not None
+        and coefficient.side is not Direction.CONSUMED
+        and aim.compound not in meant.products
+    ):
+        findings.add(
+            "YN516",
+            f"the network is not meant for the product {aim.compound!r}",
+            aim.span,
+            left=f"aim {aim}",
+            right=f"meant for the products {', '.join(meant.products)}",
+            hint=way_out.format(aim.compound, "products"),
+            severity=Severity.WARNING,
         )
     return findings
 
@@ -93,7 +141,7 @@ def moved_values(optimiser: Optimiser, layers: Layers, point: Mapping[str, Fract
     """Measured values that the reconciled point had to move, and which layer moved them."""
     findings = Findings()
     statements = layers.statements
-    targets = pool(statements.measured)
+    targets = statements.pooled()
     moved = {
         name: (point[name] - target.value) / root_of_square(target.variance)
         for name, target in targets.items()

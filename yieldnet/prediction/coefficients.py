@@ -7,7 +7,6 @@ from fractions import Fraction
 from typing import TYPE_CHECKING
 
 from yieldnet.balance.freedom import Freedom, coefficient_equations
-from yieldnet.balance.reconciled import pool
 from yieldnet.balance.statements import side_sign, with_bands, with_point, yield_column
 from yieldnet.foundation.exact import eliminate, root_of_square
 from yieldnet.optimum.hull import affine_hull
@@ -310,7 +309,7 @@ def answers(
     redundant = _redundant(layers, equations)
     calculable = equations["elements"].calculable(statements.measured_compounds())
     unknown = equations["elements"].names
-    targets = pool(statements.measured)
+    targets = statements.pooled()
     found = []
     for item in case.coefficients:
         name = item.name
@@ -318,7 +317,7 @@ def answers(
         set_aside = bool(measurements) and name not in point
         reconciled = None
         if name in point:
-            target = targets.get(name)
+            target = targets.of(name)
             reconciled = Reconciled(
                 value=point[name],
                 mean=target.value if target else point[name],

@@ -154,6 +154,8 @@ class Layers:
         Rungs that the case has.
     tightened : mapping of str to (mapping, mapping)
         Column and row bounds that each rung from ``redox`` on adds.
+    growth_residual : mapping of str to Fraction
+        Elements that one mol of growth makes from nothing within its written digits [mol/mol].
     """
 
     case: Case
@@ -163,6 +165,7 @@ class Layers:
     bound: BoundNetwork | None
     rungs: tuple[str, ...]
     tightened: Mapping[str, tuple[Mapping[str, Bounds], Mapping[str, Bounds]]]
+    growth_residual: Mapping[str, Fraction]
 
     def problem(self, rung: str) -> Problem:
         """Problem of a rung, demands in from their rung on, measured rows still free."""
@@ -234,6 +237,7 @@ def build_layers(
             bound=None,
             rungs=tuple(rungs),
             tightened={},
+            growth_residual=growth_residual,
         )
     carriers = bound.network.carriers
     energy = [item.name for item in carriers if item.kind is CarrierKind.ENERGY]
@@ -300,6 +304,7 @@ def build_layers(
         bound=bound,
         rungs=tuple(rungs),
         tightened=tightened,
+        growth_residual=growth_residual,
     )
 
 

@@ -5,6 +5,7 @@ from __future__ import annotations
 from fractions import Fraction
 from typing import TYPE_CHECKING
 
+from yieldnet.balance.elements import nitrogen_reference
 from yieldnet.balance.statements import with_point, yield_column
 from yieldnet.model.network import Direction
 from yieldnet.optimum.answer import Status
@@ -70,7 +71,7 @@ def recoveries_of(
     case: Case, terms: tuple[EquationTerm, ...], layers: Layers
 ) -> tuple[Recovery, ...]:
     """Carbon and available electrons found again, in the equation and in the measured products."""
-    reference = _nitrogen_reference(case)
+    reference = nitrogen_reference(case)
     found = []
     for quantity in ("carbon", "electrons"):
         content: dict[str, Fraction] = {}
@@ -85,16 +86,6 @@ def recoveries_of(
             continue
         found.append(_recovery(quantity, case, terms, layers, content))
     return tuple(found)
-
-
-def _nitrogen_reference(case: Case) -> str:
-    """Nitrogen source whose degree of reduction counts as zero: nitrate if only that is fed."""
-    fed = {item.name for item in case.coefficients if item.side is not Direction.PRODUCED}
-    if "nitrate" in fed and not fed & {"ammonia", "urea"}:
-        return "nitrate"
-    if "nitrogen" in fed and not fed & {"ammonia", "urea", "nitrate"}:
-        return "nitrogen"
-    return "ammonia"
 
 
 def _recovery(

@@ -9,7 +9,8 @@ from typing import TYPE_CHECKING
 from yieldnet.balance.statements import with_bands
 from yieldnet.foundation.errors import InputError
 from yieldnet.foundation.findings import Finding, Findings, Severity
-from yieldnet.model.network import Direction
+from yieldnet.model.case import EnergySurplus
+from yieldnet.model.network import BIOMASS, Direction
 from yieldnet.optimum.engine import engine_named
 from yieldnet.optimum.proof import Optimiser, Status
 from yieldnet.prediction import checks
@@ -24,7 +25,14 @@ from yieldnet.prediction.coefficients import (
     movements,
 )
 from yieldnet.prediction.conflict import find_conflict
+from yieldnet.prediction.data_tests import (
+    DEFAULT_LEVEL,
+    failed_findings,
+    judge_layers,
+    stated_assumptions,
+)
 from yieldnet.prediction.fluxes import find_fluxes
+from yieldnet.prediction.growth_energy import atp_yield, doubtful_atp_yield
 from yieldnet.prediction.ladder import (
     climb_down,
     first_infeasible,
@@ -68,11 +76,23 @@ class Wanted:
         The proof on paper.
     order : tuple of str
         Another order of the rungs below ``elements``; empty for none.
+    level : float
+        Probability with which the test of the measured values passes correct ones [-].
+
+    Raises
+    ------
+    ValueError
+        If the level is no probability between 0 and 1.
     """
 
     fluxes: bool = False
     proof: bool = False
     order: tuple[str, ...] = ()
+    level: float = DEFAULT_LEVEL
+
+    def __post_init__(self) -> None:
+        if not 0 < self.level < 1:
+            raise ValueError(f"a level of {self.level} is no probability between 0 and 1")
 
 
 def predict_case(case: Case, engine: str = "glpk", wanted: Wanted | None = None) -> Prediction:
@@ -101,7 +121,7 @@ def predict_case(case: Case, engine: str = "glpk", wanted: Wanted | None = None)
     return _answer(prepare(case, Optimiser(engine_named(engine))), wanted or Wanted())
 
 
-def balance_case(case: Case, engine: str = "glpk") -> Prediction:
+def balance_case(case: Case, engine: str = "glpk", level: float = DEFAULT_LEVEL) -> Prediction:
     """Yield coefficients of a case by elements alone.
 
     Parameters
@@ -110,6 +130,8 @@ def balance_case(case: Case, engine: str = "glpk") -> Prediction:
         The question; its network, if any, is left out.
     engine : {"glpk", "optlang"}
         Engine whose bases are proven.
+    level : float
+        Probability with which the test of the measured values passes correct ones [-].
 
     Returns
     -------
@@ -121,7 +143,8 @@ def balance_case(case: Case, engine: str = "glpk") -> Prediction:
     InputError
         If the equation lacks a compound without which it cannot close.
     """
-    return _answer(prepare(case, Optimiser(engine_named(engine)), network=False), Wanted())
+    ready = prepare(case, Optimiser(engine_named(engine)), network=False)
+    return _answer(ready, Wanted(level=level))
 
 
 def _answer(ready: Prepared, wanted: Wanted) -> Prediction:
@@ -145,6 +168,8 @@ def _answer(ready: Prepared, wanted: Wanted) -> Prediction:
     if objective is not None:
         ladder, best = climb_down(optimiser, layers, objective, point)
     equations = layer_equations(layers)
+    tested = judge_layers(layers, equations, wanted.level)
+    findings.extend(failed_findings(tested, case))
     answer = Prediction(
         case=case,
         outcome=Outcome.INFEASIBLE,
@@ -152,7 +177,11 @@ def _answer(ready: Prepared, wanted: Wanted) -> Prediction:
         freedom=freedom_of(optimiser, layers, equations, point),
         ladder=ladder,
         findings=(),
-        assumptions=assumptions_of(case, layers.statements, bound),
+        assumptions=(
+            *stated_assumptions(tested),
+            *assumptions_of(case, layers.statements, bound),
+        ),
+        tests=tuple(item.test for item in tested if item.test is not None),
     )
     if point is None:
         conflict = find_conflict(optimiser, layers)
@@ -182,6 +211,8 @@ def _answer(ready: Prepared, wanted: Wanted) -> Prediction:
     coefficient = case.coefficient(CARBON_DIOXIDE)
     if carbon_dioxide and coefficient and coefficient.side is Direction.CONSUMED:
         carbon_dioxide = carbon_dioxide.turned()
+    y_atp = atp_yield(case, bound, ranges.filled.get(BIOMASS))
+    findings.extend(doubtful_atp_yield(y_atp, case.span))
     if best is None and (wanted.fluxes or wanted.proof or wanted.order):
         findings.extend(_asked_in_vain(case, wanted))
     if best is not None and objective is not None and bound is not None:
@@ -195,6 +226,7 @@ def _answer(ready: Prepared, wanted: Wanted) -> Prediction:
         recoveries=recoveries_of(case, terms, layers),
         respiratory_quotient=respiratory_quotient(case, ranges, carbon_dioxide),
         net_carbon_dioxide=carbon_dioxide,
+        y_atp=y_atp,
         movements=movements(optimiser, layers, ranges, point, best),
         carbon_dioxide_need=carbon_dioxide_need(
             layers, point, carbon_dioxide, objective if best else None, optimiser
@@ -279,6 +311,9 @@ def _why_infeasible(layers: Layers, optimiser: Optimiser, conflict: Conflict) ->
         "energy": "more ATP is needed than can be made",
         "maintenance": "maintenance cannot be paid",
     }
+    if layers.case.energy_surplus is EnergySurplus.NONE:
+        # Then too much is as wrong as too little.
+        words["energy"] = words["maintenance"] = "the ATP made cannot equal the ATP used"
     findings.add(
         "YN601",
         f"infeasible from the rung '{rung}' on: {words[rung]}",

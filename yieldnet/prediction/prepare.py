@@ -12,7 +12,7 @@ from yieldnet.balance.statements import statements_of
 from yieldnet.foundation.errors import InputError
 from yieldnet.foundation.findings import Findings
 from yieldnet.model.binding import bind
-from yieldnet.prediction.checks import growth_conditions
+from yieldnet.prediction.checks import beyond_the_scope, growth_conditions
 from yieldnet.prediction.ladder import objective_of
 from yieldnet.prediction.layers import build_layers
 
@@ -92,14 +92,15 @@ def prepare(case: Case, optimiser: Optimiser, network: bool = True) -> Prepared:
                 hint="Add 'network: ' with a file or a shipped name, or run 'yieldnet balance'.",
             )
             raise InputError(findings)
-        places = dict(case.parameter_spans)
-        bound, doubts = refusing_rules(case.network, dict(case.parameters), optimiser, places)
+        places = case.override_spans()
+        bound, doubts = refusing_rules(case.network, case.overrides(), optimiser, places)
         findings.extend(doubts)
         findings.extend(growth_conditions(case))
+        findings.extend(beyond_the_scope(case))
         residual = bound.growth_residual()
     elif case.network is not None:
         # The element layer charges the residual of growth, so that both verbs say the same.
-        residual = bind(case.network, dict(case.parameters))[0].growth_residual()
+        residual = bind(case.network, case.overrides())[0].growth_residual()
     findings.extend(missing_compounds(case, optimiser, residual))
     if findings.refused:
         raise InputError(findings.sorted())

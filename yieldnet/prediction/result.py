@@ -14,6 +14,7 @@ if TYPE_CHECKING:
     import pandas
 
     from yieldnet.balance.freedom import Freedom
+    from yieldnet.balance.redundancy import DataTest
     from yieldnet.foundation.findings import Finding
     from yieldnet.foundation.sourced import Assumption
     from yieldnet.foundation.units import Weight
@@ -22,6 +23,7 @@ if TYPE_CHECKING:
     from yieldnet.prediction.certificate import Certificate
     from yieldnet.prediction.conflict import Conflict
     from yieldnet.prediction.fluxes import Fluxes
+    from yieldnet.prediction.growth_energy import AtpYield
     from yieldnet.prediction.ladder import LadderRung
     from yieldnet.prediction.limits import Limit
     from yieldnet.prediction.relaxations import RelaxationReport
@@ -250,6 +252,10 @@ class Prediction:
         What is doubtful.
     assumptions : tuple of Assumption
         What was taken for granted.
+    tests : tuple of DataTest
+        Chi-square test of the measured values, by layer.
+    y_atp : AtpYield or None
+        Dry weight per ATP of growth and maintenance at the aim; ``None`` without growth.
     """
 
     case: Case
@@ -273,6 +279,8 @@ class Prediction:
     fluxes: Fluxes | None = None
     certificate: Certificate | None = None
     carbon_dioxide_need: CarbonDioxideNeed | None = None
+    tests: tuple[DataTest, ...] = ()
+    y_atp: AtpYield | None = None
 
     def __repr__(self) -> str:
         best = f", {self.case.aim}" if self.case.aim else ""

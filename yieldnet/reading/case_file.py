@@ -3,53 +3,54 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, field, replace
-from fractions import Fraction
 from pathlib import Path
 from typing import TYPE_CHECKING
 
 from yieldnet.chemistry.formula import Formula
-from yieldnet.chemistry.library import find_biomass, find_compound, library_names
-from yieldnet.foundation.exact import WrittenNumber
-from yieldnet.foundation.findings import Findings, Severity, TooManyFindings, near
-from yieldnet.model.case import Case, EnergySurplus, Named, OverallCoefficient
-from yieldnet.model.equation import Unknown
+from yieldnet.foundation.findings import Findings, TooManyFindings, near
+from yieldnet.model.case import Case, EnergySurplus
 from yieldnet.model.network import Compound, Direction
+from yieldnet.reading.case_choices import ChoiceReader
 from yieldnet.reading.case_statements import StatementReader
-from yieldnet.reading.equations import read_equation
-from yieldnet.reading.fields import Fields, entries, number, text, text_list, unsplit_pairs
-from yieldnet.reading.fields import formula as formula_of
+from yieldnet.reading.concentrations import read_concentrations
+from yieldnet.reading.correlations import read_correlations
+from yieldnet.reading.fields import Fields, entries, text
 from yieldnet.reading.names import NameBook
 from yieldnet.reading.network_file import load_network
 from yieldnet.reading.nodes import Kind, Node, compose
+from yieldnet.reading.overall import OverallReader
+from yieldnet.reading.plant_section import PlantReader
 from yieldnet.reading.shipped import find_shipped, shipped_names
 from yieldnet.reading.source import MAX_FINDINGS, near_file, read_text, too_many
 
 if TYPE_CHECKING:
     from collections.abc import Callable, Mapping
 
-    from yieldnet.foundation.findings import SourceSpan
-    from yieldnet.model.equation import Equation, Term
     from yieldnet.model.network import Network
 
     NetworkLoader = Callable[[str], tuple[Network | None, Findings]]
 
-__all__ = ["CASE_KEYS", "load_case"]
+__all__ = ["CASE_KEYS", "CaseReader", "load_case"]
 
 CASE_KEYS = (
     "case",
     "about",
     "network",
     "strain",
+    "parameter set",
     "equation",
     "either side",
     "compounds",
     "conditions",
+    "concentrations",
     "measured",
+    "correlations",
     "demands",
     "aim",
     "energy surplus",
     "knock-outs",
     "parameters",
+    "plant",
 )
 """Keys of a case file."""
 _LOADERS: Mapping[str, NetworkLoader] = {".yaml": load_network, ".yml": load_network}
@@ -102,93 +103,157 @@ def _load(path: str, loaders: Mapping[str, NetworkLoader], findings: Findings) -
             hint="Give a case file; its line 'network:' names this one.",
         )
         return None
-    return _Reader(root, path, findings, loaders).case()
+    fields = Fields(root, "the case file", CASE_KEYS, findings)
+    fields.need("case", "Begin the file with 'case: ' and a title.")
+    reader = CaseReader(fields=fields, path=path, findings=findings)
+    reader.take_named_network(loaders)
+    return reader.case(fields.text("case"))
 
 
-@dataclass(slots=True)
-class _Reader:
-    """Reads the sections of one case file; later sections use what earlier ones defined."""
+@dataclass(slots=True, kw_only=True)
+class CaseReader:
+    """Reads the sections of one case; later sections use what earlier ones defined.
 
-    root: Node
+    Parameters
+    ----------
+    fields : Fields
+        The mapping that holds the case: a whole file, or an entry of a network file.
+    path : str
+        Path of the file.
+    findings : Findings
+        Receives what is wrong or doubtful.
+    """
+
+    fields: Fields
     path: str
     findings: Findings
-    loaders: Mapping[str, NetworkLoader]
-    fields: Fields = field(init=False)
     book: NameBook = field(init=False)
+    overall: OverallReader = field(init=False)
     network: Network | None = None
-    compounds: dict[str, Compound] = field(default_factory=dict)
-    coefficients: dict[str, OverallCoefficient] = field(default_factory=dict)
-    basis: Compound | None = None
+    has_network: bool = False
 
     def __post_init__(self) -> None:
-        self.fields = Fields(self.root, "the case file", CASE_KEYS, self.findings)
         self.book = NameBook(self.findings)
+        self.overall = OverallReader(book=self.book, findings=self.findings)
 
-    def case(self) -> Case | None:
+    def case(self, title: str) -> Case | None:
+        """The case, ``None`` if it has no equation that could be read.
+
+        Parameters
+        ----------
+        title : str
+            Title of the case.
+
+        Returns
+        -------
+        Case or None
+            The case as written; the findings say what is wrong in it.
+        """
         fields = self.fields
-        fields.need("case", "Begin the file with 'case: ' and a title.")
-        self._network(fields.get("network"))
         self._own_compounds(fields.get("compounds"))
-        equation = self._equation(
+        equation = self.overall.equation(
             fields.need("equation", "Write substrate + ? oxygen -> ? product + ? biomass.")
         )
-        self._either_side(fields.get("either side"))
-        if equation is not None and self.basis is not None:
+        self.overall.either_side(fields.get("either side"))
+        if equation is not None and self.overall.basis is not None:
             self._crossing_allowed()
         reader = StatementReader(
             fields=fields,
             book=self.book,
             findings=self.findings,
             network=self.network,
-            basis=self.basis or Compound(name="", formula=Formula(())),
-            known=self.basis is not None,
-            coefficients=self.coefficients,
-            compound=self._compound,
+            basis=self.overall.basis or Compound(name="", formula=Formula(())),
+            known=self.overall.basis is not None,
+            coefficients=self.overall.coefficients,
+            compound=self.overall.compound,
         )
         conditions = reader.conditions(fields.get("conditions"))
+        concentrations = read_concentrations(
+            fields.get("concentrations"),
+            self.book.resolve,
+            self._all_compounds(),
+            self.book.inside,
+            self.findings,
+        )
         measured = reader.measured(fields.get("measured"))
+        correlations = read_correlations(
+            fields.get("correlations"),
+            {item.compound: item for item in measured},
+            self.book.resolve,
+            self.findings,
+        )
         demands = reader.demands(fields.get("demands"))
         aim = reader.aim(fields.get("aim"))
         surplus = self._surplus(fields.get("energy surplus"))
-        strain = self._strain(fields.get("strain"))
-        knock_outs = self._knock_outs(fields.get("knock-outs"), strain)
-        parameters = self._parameters(fields.get("parameters"))
-        if equation is None or self.basis is None:
+        choices = ChoiceReader(
+            network=self.network, has_network=self.has_network, findings=self.findings
+        )
+        strain = choices.strain(fields.get("strain"))
+        knock_outs = choices.knock_outs(fields.get("knock-outs"), strain)
+        parameter_set = choices.parameter_set(fields.get("parameter set"))
+        parameters = choices.parameters(fields.get("parameters"))
+        plant = PlantReader(
+            findings=self.findings,
+            resolve=self.book.resolve,
+            basis=self.overall.basis.name if self.overall.basis is not None else "",
+            coefficients=self.overall.coefficients,
+            aim=aim,
+            has_network=self.has_network,
+            ph=conditions.get("pH"),
+            uptake=conditions.get("substrate uptake"),
+        ).plant(fields.get("plant"))
+        if equation is None or self.overall.basis is None:
             return None
         return Case(
-            title=fields.text("case"),
+            title=title,
             about=fields.text("about"),
-            network=self.network,
+            network=choices.chosen_network(parameter_set),
             equation=equation,
-            basis=self.basis,
-            coefficients=tuple(self.coefficients.values()),
-            compounds=(self.basis, *self.compounds.values()),
+            basis=self.overall.basis,
+            coefficients=tuple(self.overall.coefficients.values()),
+            compounds=(self.overall.basis, *self.overall.compounds.values()),
             strain=strain,
             growth_rate=conditions.get("growth rate"),
             substrate_uptake=conditions.get("substrate uptake"),
             temperature=conditions.get("temperature"),
+            ph=conditions.get("pH"),
+            concentrations=concentrations,
             measured=measured,
+            correlations=correlations,
             demands=demands,
             aim=aim,
             energy_surplus=surplus or EnergySurplus.LOST,
             energy_surplus_given=surplus is not None,
             knock_outs=knock_outs,
+            parameter_set=parameter_set,
             parameters=tuple((name, value) for name, value, _ in parameters),
             parameter_spans=tuple((name, span) for name, _, span in parameters),
+            plant=plant,
             file=self.path,
-            span=self.root.span,
+            span=fields.node.span,
         )
 
-    def _network(self, node: Node | None) -> None:
+    def _all_compounds(self) -> dict[str, Compound]:
+        """Compounds of the equation and of the network; empty if either cannot be read."""
+        if self.overall.basis is None or self.book.accept_all:
+            return {}
+        listed = (self.overall.basis, *self.overall.compounds.values())
+        inside = self.network.compounds if self.network is not None else ()
+        return {item.name: item for item in (*inside, *listed)}
+
+    def take_named_network(self, loaders: Mapping[str, NetworkLoader]) -> None:
+        """Read the network that the case names, if it names one."""
+        node = self.fields.get("network")
         if node is None:
             return
+        self.has_network = True
         written = text(node, "'network'", self.findings)
         if written is None:
             self.book.accept_all = True
             return
         beside = Path(self.path).parent / written
         shipped = find_shipped(written)
-        if beside.suffix not in self.loaders and shipped is None:
+        if beside.suffix not in loaders and shipped is None:
             self.book.accept_all = True
             self.findings.add(
                 "YN513",
@@ -213,11 +278,16 @@ class _Reader:
                     or "The path counts from the folder of the case file.",
                 )
                 return
-            network, findings = self.loaders[beside.suffix](str(beside))
+            network, findings = loaders[beside.suffix](str(beside))
         self.findings.extend(findings)
         if network is None:
             self.book.accept_all = True
             return
+        self.take_network(network)
+
+    def take_network(self, network: Network) -> None:
+        """Take a network that was read already; its compounds are those of the case."""
+        self.has_network = True
         self.network = network
         self.book.use_library = False
         self.book.own.update({item.name: item for item in network.compounds})
@@ -226,7 +296,7 @@ class _Reader:
     def _own_compounds(self, node: Node | None) -> None:
         if node is None:
             return
-        if self.fields.get("network") is not None:
+        if self.has_network:
             self.findings.add(
                 "YN110",
                 "'compounds' is for cases without a network",
@@ -234,161 +304,16 @@ class _Reader:
                 hint="Define the compound in the network file.",
             )
             return
-        for key, value in unsplit_pairs(node, "'compounds'", self.findings, library_names()):
-            label = f"compound {key.text!r}"
-            twin = self.book.twin(key.text)
-            if twin is not None:
-                self.findings.add(
-                    "YN303",
-                    f"{key.text!r} and {twin!r} are two names of one compound",
-                    key.span,
-                    hint="Define it once, and use one name throughout the file.",
-                )
-            ash: WrittenNumber | None = None
-            if value.kind is Kind.MAPPING:
-                inner = Fields(value, label, ("formula", "ash", "about"), self.findings)
-                ash = inner.number("ash")
-                if ash is not None and not 0 <= ash.value < 1:
-                    self.findings.add(
-                        "YN210",
-                        f"ash {ash.text} is not a fraction of the dry weight",
-                        inner.span("ash"),
-                        hint="Write 0.05 for 5 % of the dry weight.",
-                    )
-                    ash = None
-                value_node = inner.need("formula", "Give its formula.")
-            else:
-                value_node = value
-            organism = find_biomass(value_node.text) if value_node else None
-            formula = organism.formula if organism else None
-            if value_node is not None and organism is None:
-                formula = formula_of(value_node, label, self.findings)
-            if ash is None and organism is not None and organism.ash is not None:
-                ash = WrittenNumber(organism.ash, str(organism.ash))
-            self.book.define(key.text, None, key.span)
-            if formula is None:
-                continue
-            entry = find_compound(key.text)
-            if entry and (
-                dict(entry.formula.elements) != dict(formula.elements)
-                or entry.formula.charge != formula.charge
-            ):
-                self.findings.add(
-                    "YN304",
-                    f"{key.text!r} has another formula in the compound library",
-                    key.span,
-                    left=f"here {formula}",
-                    right=f"library {entry.formula}",
-                    hint="Leave it out to use the library's, or give it another name.",
-                )
-            self.book.own[key.text] = Compound(
-                name=key.text, formula=formula, ash=ash.value if ash else Fraction(0), span=key.span
-            )
-
-    def _compound(self, name: str) -> Compound:
-        found = self.book.own.get(name) or self.book.taken.get(name)
-        return found or Compound(name=name, formula=Formula(()))
-
-    def _equation(self, node: Node | None) -> Equation | None:
-        if node is None:
-            return None
-        written = text(node, "the equation", self.findings)
-        if written is None:
-            return None
-        equation = read_equation(
-            written, node.span, "overall equation", self.findings, self.book.resolve, node.locate
-        )
-        if equation is None:
-            return None
-        if equation.reversible:
-            self.findings.add(
-                "YN208",
-                "the overall equation runs one way",
-                node.span,
-                left="found <->",
-                hint="Write ->; list a compound under 'either side' if its side is not known.",
-            )
-        basis, *others = equation.terms()
-        self._take_basis(basis[1], node)
-        for sign, term in others:
-            side = Direction.CONSUMED if sign < 0 else Direction.PRODUCED
-            if self.basis is not None and term.name == self.basis.name:
-                self.findings.add(
-                    "YN501",
-                    f"the basis {term.name!r} stands twice in the equation",
-                    node.span,
-                    hint="The first compound on the left is the basis; it stands there alone.",
-                )
-                continue
-            if term.name in self.coefficients:
-                self.findings.add(
-                    "YN305",
-                    f"{term.name!r} stands twice in the equation",
-                    node.span,
-                    hint="Keep one; list it under 'either side' if its side is not known.",
-                )
-                continue
-            written_number: WrittenNumber | None = None
-            if isinstance(term.coefficient, WrittenNumber):
-                written_number = term.coefficient
-            elif not isinstance(term.coefficient, Unknown):
-                self.findings.add(
-                    "YN208",
-                    f"the coefficient {term.coefficient} of {term.name!r} is an expression",
-                    node.span,
-                    hint="Write a number or ? in the overall equation.",
-                )
-            self._list(term.name, side, written_number, node.span)
-        return equation
-
-    def _take_basis(self, term: Term, node: Node) -> None:
-        name, coefficient = term.name, term.coefficient
-        self.basis = self._compound(name)
-        exact_one = isinstance(coefficient, WrittenNumber) and coefficient.value == 1
-        shown = coefficient.text if isinstance(coefficient, WrittenNumber) else str(coefficient)
-        if not exact_one:
-            self.findings.add(
-                "YN501",
-                f"the basis {name!r} has the coefficient {shown}",
-                node.span,
-                left="expected 1 or none",
-                hint="All other coefficients are told per mol of it: divide them.",
-            )
-
-    def _list(
-        self, name: str, side: Direction, written: WrittenNumber | None, span: SourceSpan
-    ) -> None:
-        self.coefficients[name] = OverallCoefficient(
-            name=name, side=side, written=written, span=span
-        )
-        self.compounds[name] = self._compound(name)
-
-    def _either_side(self, node: Node | None) -> None:
-        if node is None:
-            return
-        known = (*self.book.own, *library_names())
-        for item in text_list(node, "'either side'", self.findings, known):
-            name = self.book.resolve(item.text, item.span)
-            if name is None:
-                continue
-            if name in self.coefficients or (self.basis and name == self.basis.name):
-                self.findings.add(
-                    "YN305",
-                    f"{name!r} stands in the equation and under 'either side'",
-                    item.span,
-                    hint="Keep it in one of them.",
-                )
-                continue
-            self._list(name, Direction.EITHER, None, item.span)
+        self.overall.own_compounds(node)
 
     def _crossing_allowed(self) -> None:
         network = self.network
-        if network is None or self.basis is None:
+        if network is None or self.overall.basis is None:
             return
-        asked = [(self.basis.name, Direction.CONSUMED, self.fields.span("equation"))]
+        asked = [(self.overall.basis.name, Direction.CONSUMED, self.fields.span("equation"))]
         asked += [
-            (item.name, item.side, item.span or self.root.span)
-            for item in self.coefficients.values()
+            (item.name, item.side, item.span or self.fields.node.span)
+            for item in self.overall.coefficients.values()
         ]
         words = {
             Direction.CONSUMED: "taken up",
@@ -429,97 +354,6 @@ class _Reader:
             )
             return None
         return EnergySurplus(written)
-
-    def _strain(self, node: Node | None) -> Named | None:
-        written = text(node, "'strain'", self.findings) if node else None
-        if node is None or written is None:
-            return None
-        if self.network is not None and self.network.strain(written) is None:
-            names = [item.name for item in self.network.strains]
-            self.findings.add(
-                "YN302",
-                f"strain {written!r} is not in the network",
-                node.span,
-                hint=near(written, names)
-                or ("Known strains: " + ", ".join(names) if names else "It has no strains."),
-            )
-            return None
-        self._needs_network("strain", node)
-        return Named(name=written, span=node.span)
-
-    def _needs_network(self, what: str, node: Node) -> None:
-        if self.fields.get("network") is None:
-            self.findings.add(
-                "YN111",
-                f"{what!r} needs a 'network'",
-                node.span,
-                hint="Name a network, or leave this out.",
-            )
-
-    def _knock_outs(self, node: Node | None, strain: Named | None) -> tuple[Named, ...]:
-        if node is None:
-            return ()
-        self._needs_network("knock-outs", node)
-        network = self.network
-        known: tuple[str, ...] = ()
-        if network is not None:
-            known = (*(item.name for item in network.reactions), *network.groups())
-        found: dict[str, Named] = {}
-        for item in text_list(node, "'knock-outs'", self.findings, known):
-            if network is not None and not network.members(item.text):
-                self.findings.add(
-                    "YN302",
-                    f"knock-out {item.text!r} is neither a reaction nor a group",
-                    item.span,
-                    hint=near(item.text, known) or "Write a name as in the network file.",
-                )
-                continue
-            if item.text in found:
-                self.findings.add(
-                    "YN305",
-                    f"{item.text!r} is knocked out twice",
-                    item.span,
-                    hint="Keep one.",
-                    severity=Severity.WARNING,
-                )
-            found.setdefault(item.text, Named(name=item.text, span=item.span))
-        if network is not None:
-            preset = network.strain(strain.name) if strain else None
-            gone = {
-                member
-                for name in (*found, *(preset.off if preset else ()))
-                for member in network.members(name)
-            }
-            if all(item.name in gone for item in network.reactions):
-                self.findings.add(
-                    "YN508",
-                    "no reaction is left after the knock-outs",
-                    node.span,
-                    hint="Take some of them out of the list.",
-                )
-        return tuple(found.values())
-
-    def _parameters(self, node: Node | None) -> tuple[tuple[str, Fraction, SourceSpan], ...]:
-        found: list[tuple[str, Fraction, SourceSpan]] = []
-        if node is None:
-            return ()
-        self._needs_network("parameters", node)
-        network = self.network
-        for key, value in entries(node, "'parameters'", self.findings):
-            written = number(value, f"parameter {key.text!r}", self.findings)
-            known = {item.name: item for item in network.parameters} if network else {}
-            if network is not None and key.text not in known:
-                self.findings.add(
-                    "YN302",
-                    f"parameter {key.text!r} is not in the network",
-                    key.span,
-                    hint=near(key.text, known) or "Known: " + ", ".join(known) + ".",
-                )
-                continue
-            if written is None:
-                continue
-            found.append((key.text, written.value, key.span))
-        return tuple(found)
 
 
 def _exists(path: Path) -> bool:

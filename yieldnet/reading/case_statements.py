@@ -41,10 +41,12 @@ if TYPE_CHECKING:
 
 __all__ = ["ABSOLUTE_ZERO", "CONDITION_KEYS", "StatementReader"]
 
-CONDITION_KEYS = ("growth rate", "substrate uptake", "temperature")
+CONDITION_KEYS = ("growth rate", "substrate uptake", "temperature", "pH")
 """Keys of 'conditions'."""
 ABSOLUTE_ZERO = Fraction("-273.15")
 """Lowest temperature [degC]."""
+HIGHEST_PH = 14
+"""Highest pH that is believed [-]."""
 
 
 @dataclass(slots=True, kw_only=True)
@@ -108,7 +110,7 @@ class StatementReader:
                 )
                 continue
             amount = quantity.number.value * factor + shift
-            if key.text != "temperature" and amount <= 0:
+            if key.text in ("growth rate", "substrate uptake") and amount <= 0:
                 self.findings.add(
                     "YN210",
                     f"{key.text} {quantity.number.text} is not positive",
@@ -122,6 +124,14 @@ class StatementReader:
                     f"temperature {written} is below absolute zero",
                     value.span,
                     hint="Write it in degC or K.",
+                )
+                continue
+            if key.text == "pH" and not 0 <= amount <= HIGHEST_PH:
+                self.findings.add(
+                    "YN210",
+                    f"pH {quantity.number.text} lies outside 0 to {HIGHEST_PH}",
+                    value.span,
+                    hint="Write the pH of the broth, such as 7.0.",
                 )
                 continue
             found[key.text] = Condition(
@@ -140,7 +150,11 @@ class StatementReader:
         return found
 
     def _condition_factor(self, name: str, unit: Unit | None) -> tuple[Fraction, Fraction]:
-        """Shift and factor to 1/h, mol/g/h or degC."""
+        """Shift and factor to 1/h, mol/g/h or degC; a pH has no unit."""
+        if name == "pH":
+            if unit is not None:
+                raise UnitError(f"a pH has no unit, and '{unit}' is written", "Leave it out.")
+            return Fraction(0), Fraction(1)
         if unit is None:
             wanted = {"growth rate": "1/h", "substrate uptake": "mmol/g/h"}.get(name, "degC")
             raise UnitError("the unit is missing", f"Write it in {wanted}.")

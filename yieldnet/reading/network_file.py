@@ -10,7 +10,6 @@ from yieldnet.chemistry.library import (
 )
 from yieldnet.foundation.exact import WrittenNumber
 from yieldnet.foundation.findings import Findings, TooManyFindings, near
-from yieldnet.foundation.units import UnitError, Weight, specific_rate_mol_per_gram_hour
 from yieldnet.model.expression import Expression
 from yieldnet.model.network import (
     BIOMASS,
@@ -19,30 +18,33 @@ from yieldnet.model.network import (
     Compound,
     Direction,
     Growth,
-    Maintenance,
     Network,
     Parameter,
     Reaction,
     Strain,
 )
 from yieldnet.reading.equations import read_equation
-from yieldnet.reading.fields import Fields, entries, number, text, text_list
+from yieldnet.reading.fields import Fields, entries, text, text_list
+from yieldnet.reading.maintenance import read_maintenance
 from yieldnet.reading.names import NameBook
 from yieldnet.reading.network_matter import MatterReader
+from yieldnet.reading.network_meaning import read_meant_for
+from yieldnet.reading.network_parameters import read_parameter_sets, read_parameters
 from yieldnet.reading.nodes import Kind, Node, compose
-from yieldnet.reading.quantities import read_quantity
 from yieldnet.reading.source import MAX_FINDINGS, read_text, too_many
 
 if TYPE_CHECKING:
     from yieldnet.foundation.findings import SourceSpan
     from yieldnet.model.equation import Equation, Term
 
-__all__ = ["NETWORK_KEYS", "load_network", "parse_network"]
+__all__ = ["NETWORK_KEYS", "compose_network", "load_network", "parse_network"]
 
 NETWORK_KEYS = (
     "network",
     "about",
+    "meant for",
     "parameters",
+    "parameter sets",
     "compounds",
     "carriers",
     "crossing",
@@ -50,6 +52,7 @@ NETWORK_KEYS = (
     "strains",
     "growth",
     "maintenance",
+    "reproduces",
 )
 """Keys of a network file."""
 _SIDES = {"in": Direction.CONSUMED, "out": Direction.PRODUCED, "either": Direction.EITHER}
@@ -96,15 +99,41 @@ def parse_network(source: str, path: str = "") -> tuple[Network | None, Findings
     """
     findings = Findings(limit=MAX_FINDINGS)
     try:
-        root = compose(source, path, findings)
+        _, network = compose_network(source, path, findings)
     except TooManyFindings:
         findings.items.append(too_many(path))
-        root = None
+        network = None
+    return (None if findings.refused else network), findings
+
+
+def compose_network(
+    source: str, path: str, findings: Findings
+) -> tuple[Node | None, Network | None]:
+    """Top node of a YAML text and the network in it, for readers of its other sections.
+
+    Parameters
+    ----------
+    source : str
+        The text.
+    path : str
+        Its name in messages.
+    findings : Findings
+        Receives what is wrong or doubtful.
+
+    Returns
+    -------
+    Node or None
+        The mapping of the file; ``None`` if it is none.
+    Network or None
+        The network as written; ``None`` if the file is no network. It may be wrong in parts, which
+        the findings say.
+    """
+    root = compose(source, path, findings)
     if root is None:
-        return None, findings
+        return None, None
     if root.kind is not Kind.MAPPING:
         entries(root, "the file", findings)
-        return None, findings
+        return None, None
     if any(key.text in {"case", "equation", "aim"} for key, _ in root.pairs):
         findings.add(
             "YN113",
@@ -112,13 +141,8 @@ def parse_network(source: str, path: str = "") -> tuple[Network | None, Findings
             root.span,
             hint="Give the network file, or give this file where a case is wanted.",
         )
-        return None, findings
-    try:
-        network = _Reader(root, path, findings).network()
-    except TooManyFindings:
-        findings.items.append(too_many(path))
-        network = None
-    return (None if findings.refused else network), findings
+        return None, None
+    return root, _Reader(root, path, findings).network()
 
 
 @dataclass(slots=True)
@@ -130,8 +154,8 @@ class _Reader:
     findings: Findings
     book: NameBook = field(init=False)
     matter: MatterReader = field(init=False)
-    parameters: list[Parameter] = field(default_factory=list)
-    declared: list[str] = field(default_factory=list)
+    parameters: tuple[Parameter, ...] = ()
+    declared: tuple[str, ...] = ()
     crossing_spans: dict[str, SourceSpan] = field(default_factory=dict)
 
     def __post_init__(self) -> None:
@@ -142,7 +166,7 @@ class _Reader:
     def network(self) -> Network:
         fields = Fields(self.root, "the network file", NETWORK_KEYS, self.findings)
         fields.need("network", "Begin the file with 'network: ' and a title.")
-        self._parameters(fields.get("parameters"))
+        self.parameters, self.declared = read_parameters(fields.get("parameters"), self.findings)
         matter = self.matter
         matter.read_carriers(fields.get("carriers"))
         matter.read_compounds(fields.get("compounds"))
@@ -162,8 +186,15 @@ class _Reader:
                 fields.span("growth"),
                 hint="Add 'biomass' to the 'out' list of 'crossing'.",
             )
+        meant_for = read_meant_for(
+            fields.get("meant for"), crossing, self.book, self.findings, crossing_node is not None
+        )
         strains = self._strains(fields.get("strains"), reactions)
-        maintenance = self._maintenance(fields.get("maintenance"))
+        energy = [item.name for item in matter.carriers if item.kind is CarrierKind.ENERGY]
+        maintenance = read_maintenance(fields.get("maintenance"), energy, self.findings)
+        parameter_sets = read_parameter_sets(
+            fields.get("parameter sets"), self.parameters, self.declared, energy, self.findings
+        )
         listed = {item.name for item in matter.own}
         library = self.book.taken
         return Network(
@@ -176,7 +207,9 @@ class _Reader:
             carriers=tuple(self.matter.carriers),
             crossing=crossing,
             reactions=reactions,
-            parameters=tuple(self.parameters),
+            parameters=self.parameters,
+            parameter_sets=parameter_sets,
+            meant_for=meant_for,
             strains=strains,
             growth=growth,
             maintenance=maintenance,
@@ -184,52 +217,6 @@ class _Reader:
             crossing_spans=tuple(self.crossing_spans.items()),
             span=self.root.span,
         )
-
-    def _parameters(self, node: Node | None) -> None:
-        for key, value in entries(node, "'parameters'", self.findings) if node else ():
-            label = f"parameter {key.text!r}"
-            self.declared.append(key.text)
-            if not key.text.isidentifier():
-                self.findings.add(
-                    "YN206",
-                    f"{label} cannot be used in an expression",
-                    key.span,
-                    hint="Use letters, digits and underscores, a letter first.",
-                )
-            if value.kind is not Kind.MAPPING:
-                plain = number(value, label, self.findings)
-                if plain is not None:
-                    self.parameters.append(
-                        Parameter(name=key.text, value=plain.value, span=value.span)
-                    )
-                continue
-            fields = Fields(
-                value, label, ("value", "low", "high", "unit", "about", "source"), self.findings
-            )
-            fields.need("value", "Give its value.")
-            main, low, high = (fields.number(name) for name in ("value", "low", "high"))
-            if low and high and low.value > high.value:
-                self.findings.add(
-                    "YN511",
-                    f"{label} has its low end above its high end",
-                    fields.span("low"),
-                    left=f"low {low.text}",
-                    right=f"high {high.text}",
-                    hint="Exchange them.",
-                )
-            if main is not None:
-                self.parameters.append(
-                    Parameter(
-                        name=key.text,
-                        value=main.value,
-                        low=low.value if low else None,
-                        high=high.value if high else None,
-                        unit=fields.text("unit"),
-                        about=fields.text("about"),
-                        source=fields.text("source"),
-                        span=fields.span("value"),
-                    )
-                )
 
     def _crossing(self, node: Node | None) -> tuple[tuple[str, Direction], ...]:
         found: dict[str, tuple[Direction, SourceSpan]] = {}
@@ -400,77 +387,6 @@ class _Reader:
                 Strain(name=key.text, off=tuple(item.text for item in off), span=key.span)
             )
         return tuple(strains)
-
-    def _maintenance(self, node: Node | None) -> Maintenance | None:
-        if node is None:
-            return None
-        pairs = entries(node, "'maintenance'", self.findings)
-        if len(pairs) != 1:
-            if node.kind is Kind.MAPPING:
-                self.findings.add(
-                    "YN112",
-                    f"'maintenance' names {len(pairs)} carriers",
-                    node.span,
-                    left="expected one",
-                    hint="Write {ATP: 2.5 mmol/g/h}.",
-                )
-            return None
-        key, value = pairs[0]
-        energy = [item.name for item in self.matter.carriers if item.kind is CarrierKind.ENERGY]
-        if key.text not in energy:
-            self.findings.add(
-                "YN302",
-                f"maintenance is told in {key.text!r}, which is no energy carrier",
-                key.span,
-                hint=near(key.text, energy) or "Name a carrier of kind energy.",
-            )
-        source = ""
-        if value.kind is Kind.MAPPING:
-            fields = Fields(value, "'maintenance'", ("value", "source"), self.findings)
-            source = fields.text("source")
-            inner = fields.need("value", "Give the rate.")
-            if inner is None:
-                return None
-            value = inner
-        written = text(value, "'maintenance'", self.findings)
-        quantity = (
-            read_quantity(written, value.span, "maintenance", self.findings) if written else None
-        )
-        if quantity is None or written is None:
-            return None
-        try:
-            if quantity.unit is None:
-                raise UnitError("the unit is missing", "Write it in mmol/g/h.")
-            factor = specific_rate_mol_per_gram_hour(
-                quantity.unit, Weight(name=key.text, molar_mass=None, carbon=None)
-            )
-        except UnitError as error:
-            self.findings.add(
-                error.code, f"maintenance: {error.reason}", value.span, hint=error.hint
-            )
-            return None
-        if quantity.sd is not None:
-            self.findings.add(
-                "YN112",
-                "maintenance has an error, which nothing here would use",
-                value.span,
-                hint="Write the value alone; a parameter may have a low and a high.",
-            )
-        if quantity.number.value < 0:
-            self.findings.add(
-                "YN210",
-                f"maintenance {quantity.number.text} is negative",
-                value.span,
-                hint="Maintenance spends energy: write its size.",
-            )
-        return Maintenance(
-            carrier=key.text,
-            rate_mol_per_gram_hour=quantity.number.value * factor,
-            written=quantity.number,
-            unit=str(quantity.unit),
-            source=source,
-            span=value.span,
-        )
 
 
 def _is_one(term: Term) -> bool:

@@ -15,6 +15,7 @@ from yieldnet.chemistry.library import (
 )
 from yieldnet.foundation.findings import near
 from yieldnet.model.network import BIOMASS, Carrier, CarrierKind, Compound
+from yieldnet.reading.composition import COMPOSED_KEYS, is_composed, read_composed
 from yieldnet.reading.fields import Fields, entries, text, unsplit_pairs
 from yieldnet.reading.fields import formula as formula_of
 from yieldnet.reading.nodes import Kind
@@ -212,26 +213,7 @@ class MatterReader:
         value = next((item for key, item in node.pairs if key.text == BIOMASS), None)
         compound: Compound | None = None
         if value is not None and value.kind is Kind.MAPPING:
-            fields = Fields(value, "the biomass", ("formula", "ash", "about"), self.findings)
-            written = fields.need("formula", "Give its ash-free formula, such as CH1.8O0.5N0.2.")
-            formula = formula_of(written, "the biomass", self.findings) if written else None
-            ash = fields.number("ash")
-            if ash is not None and not 0 <= ash.value < 1:
-                self.findings.add(
-                    "YN210",
-                    f"ash {ash.text} is not a fraction of the dry weight",
-                    fields.span("ash"),
-                    hint="Write 0.05 for 5 % of the dry weight.",
-                )
-                ash = None
-            if formula is not None:
-                compound = Compound(
-                    name=BIOMASS,
-                    formula=formula,
-                    ash=ash.value if ash else Fraction(0),
-                    about=fields.text("about"),
-                    span=value.span,
-                )
+            compound = self._own_biomass(value)
         elif value is not None:
             word = text(value, "the biomass", self.findings)
             entry = find_biomass(word) if word else None
@@ -262,3 +244,40 @@ class MatterReader:
                     hint="Phosphate is left out of these networks: leave P out of the biomass.",
                 )
         return compound
+
+    def _own_biomass(self, value: Node) -> Compound | None:
+        """Biomass with a formula of its own, or put together from macromolecules."""
+        keys = ("formula", "ash", "about", *COMPOSED_KEYS)
+        fields = Fields(value, "the biomass", keys, self.findings)
+        about = fields.text("about")
+        if is_composed(fields):
+            composed = read_composed(fields, "the biomass", self.findings)
+            if composed is None:
+                return None
+            return Compound(
+                name=BIOMASS,
+                formula=composed.formula,
+                ash=composed.minerals,
+                about=f"{about}; {composed.about}" if about else composed.about,
+                span=value.span,
+            )
+        written = fields.need("formula", "Give its ash-free formula, such as CH1.8O0.5N0.2.")
+        formula = formula_of(written, "the biomass", self.findings) if written else None
+        ash = fields.number("ash")
+        if ash is not None and not 0 <= ash.value < 1:
+            self.findings.add(
+                "YN210",
+                f"ash {ash.text} is not a fraction of the dry weight",
+                fields.span("ash"),
+                hint="Write 0.05 for 5 % of the dry weight.",
+            )
+            ash = None
+        if formula is None:
+            return None
+        return Compound(
+            name=BIOMASS,
+            formula=formula,
+            ash=ash.value if ash else Fraction(0),
+            about=about,
+            span=value.span,
+        )

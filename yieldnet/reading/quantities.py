@@ -4,14 +4,13 @@ from __future__ import annotations
 
 import re
 from dataclasses import dataclass
+from fractions import Fraction
 from typing import TYPE_CHECKING
 
-from yieldnet.foundation.exact import NumberTextError, WrittenNumber, read_number
+from yieldnet.foundation.exact import NumberTextError, WrittenNumber, read_number, root_of_square
 from yieldnet.foundation.units import UnitError, read_unit
 
 if TYPE_CHECKING:
-    from fractions import Fraction
-
     from yieldnet.foundation.findings import Findings, SourceSpan
     from yieldnet.foundation.units import Unit
 
@@ -27,7 +26,7 @@ class Quantity:
     number : WrittenNumber
         The number, in ``unit``.
     sd : Fraction or None
-        Standard deviation, in ``unit``; ``None`` if exact.
+        Standard deviation of the value, in ``unit``; ``None`` if exact.
     unit : Unit or None
         ``None`` where none is written.
     """
@@ -62,7 +61,9 @@ def read_quantity(text: str, span: SourceSpan, label: str, findings: Findings) -
     ----------
     text : str
         ``0.11 ± 0.01 g/g``; ``+/-`` and ``+-`` stand for ±, the error may be a percentage of the
-        value, and ``exact`` may stand in its place.
+        value, and ``exact`` may stand in its place. What ± means may stand behind it in brackets:
+        ``(95 %)`` a 95 % confidence interval, ``(n = 4)`` the standard deviation of single values
+        of which four were averaged, ``(95 %, n = 4)`` the interval found from those four.
     span : SourceSpan
         Where it stands.
     label : str
@@ -74,9 +75,16 @@ def read_quantity(text: str, span: SourceSpan, label: str, findings: Findings) -
     -------
     Quantity or None
         What was written.
+
+    Notes
+    -----
+    An interval of 95 % is 1.96 standard deviations of a normal distribution to either side; with n
+    it is Student's t for n - 1 degrees of freedom. The standard deviation of a mean of n is that of
+    single values over the root of n.
     """
     try:
-        words = _words(text)
+        body, meaning = _meaning(text)
+        words = _words(body)
         number, rest = _number(words)
         sd: Fraction | None = None
         if rest and rest[0] == "exact":
@@ -97,6 +105,14 @@ def read_quantity(text: str, span: SourceSpan, label: str, findings: Findings) -
                     f"the standard deviation {word} is negative",
                     "Write its size without a sign.",
                 )
+        if meaning and not sd:
+            raise _Refused(
+                "YN201",
+                f"({meaning}) explains an error, and none is written",
+                f"Write value ± error unit ({meaning}).",
+            )
+        if sd and meaning:
+            sd /= _divisor(meaning)
         return Quantity(number=number, sd=sd or None, unit=_unit(rest))
     except _Refused as refused:
         findings.add(refused.code, f"{label}: {refused.reason}", span, hint=refused.hint)
@@ -148,6 +164,72 @@ def read_range(text: str, span: SourceSpan, label: str, findings: Findings) -> Q
     except _Refused as refused:
         findings.add(refused.code, f"{label}: {refused.reason}", span, hint=refused.hint)
         return None
+
+
+_NORMAL_95 = Fraction("1.96")
+"""Half width of a 95 % interval of a normal distribution in standard deviations [-]."""
+_BRACKET = re.compile(r"(?P<body>.*\S)\s+\((?P<meaning>[^()]*)\)\s*")
+_COUNT = re.compile(r"n\s*=\s*(\d+)", re.ASCII)
+
+
+@dataclass(frozen=True, slots=True)
+class _Meaning:
+    """What stands behind ±: an interval of 95 %, a number of values, or both."""
+
+    interval: bool
+    count: int | None
+    text: str
+
+    def __str__(self) -> str:
+        return self.text
+
+
+def _meaning(text: str) -> tuple[str, _Meaning | None]:
+    """The text before a bracket at its end, and what the bracket says."""
+    found = _BRACKET.fullmatch(text)
+    if found is None:
+        return text, None
+    interval, count = False, None
+    for part in found["meaning"].split(","):
+        number = _COUNT.fullmatch(part.strip())
+        if part.replace(" ", "") == "95%" and not interval:
+            interval = True
+        elif number and count is None:
+            if not 2 <= int(number[1]) <= _MAX_COUNT:
+                raise _Refused(
+                    "YN210",
+                    f"n = {number[1]} is no number of values that were averaged",
+                    f"Write a whole number from 2 to {_MAX_COUNT}, or leave it out.",
+                )
+            count = int(number[1])
+        else:
+            raise _Refused(
+                "YN201",
+                f"({found['meaning']}) is not understood behind an error",
+                "Known: (95 %), (n = 4), (95 %, n = 4).",
+            )
+    return found["body"], _Meaning(interval, count, found["meaning"].strip())
+
+
+def _divisor(meaning: _Meaning) -> Fraction:
+    """What turns the error as written into the standard deviation of the value."""
+    if meaning.interval and meaning.count:
+        return _student(meaning.count - 1)
+    if meaning.interval:
+        return _NORMAL_95
+    assert meaning.count is not None
+    return root_of_square(Fraction(meaning.count))
+
+
+def _student(degrees: int) -> Fraction:
+    """Student's t of a two-sided 95 % interval, to 12 significant digits."""
+    from scipy.stats import t  # type: ignore[import-untyped]
+
+    return Fraction(f"{t.ppf(0.975, degrees):.12g}")
+
+
+_MAX_COUNT = 100_000
+"""Most values that a mean is believed to be taken of [-]."""
 
 
 def _words(text: str) -> list[str]:

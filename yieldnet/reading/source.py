@@ -26,7 +26,7 @@ _MARKS = {
 }
 
 
-def read_text(path: str, findings: Findings) -> str | None:
+def read_text(path: str, findings: Findings, *, indented_by_tabs: bool = False) -> str | None:
     """Text of a file, or ``None`` with findings that say why not.
 
     Parameters
@@ -35,6 +35,8 @@ def read_text(path: str, findings: Findings) -> str | None:
         Path as the user gave it.
     findings : Findings
         Receives what is wrong.
+    indented_by_tabs : bool
+        Whether a line may begin with a tab, as it may in a table.
 
     Returns
     -------
@@ -69,7 +71,10 @@ def read_text(path: str, findings: Findings) -> str | None:
             hint=near_file(place) or "Check the path.",
         )
         return None
-    return _decode(raw, path, top, findings)
+    text = _decode(raw, path, top, findings)
+    if text is None or indented_by_tabs:
+        return text
+    return _without_tabs(text, path, findings)
 
 
 def too_many(path: str) -> Finding:
@@ -131,6 +136,10 @@ def _decode(raw: bytes, path: str, top: SourceSpan, findings: Findings) -> str |
             hint="Save the file with line feeds alone (Unix line ends).",
         )
         return None
+    return text
+
+
+def _without_tabs(text: str, path: str, findings: Findings) -> str | None:
     tabs = [
         SourceSpan(file=path, line=number, column=found.end())
         for number, line in enumerate(text.split("\n"), 1)

@@ -3,12 +3,23 @@
 from __future__ import annotations
 
 from fractions import Fraction
+from math import floor, log10
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
     from yieldnet.optimum.ranges import Range
 
-__all__ = ["DIGITS", "figure", "percent", "range_text", "signed", "with_sign"]
+__all__ = [
+    "DIGITS",
+    "figure",
+    "p_words",
+    "percent",
+    "probability",
+    "range_text",
+    "signed",
+    "with_error",
+    "with_sign",
+]
 
 DIGITS = 3
 """Significant digits of a number in a text: no cultivation is known better [-]."""
@@ -95,3 +106,53 @@ def range_text(value: Range | None) -> str:
         return figure(value.low)
     low = "unbounded" if value.low is None else figure(value.low)
     return f"{low}…{figure(value.high)}"
+
+
+def probability(value: float | None) -> str:
+    """Probability in two significant digits; small ones as a bound.
+
+    Examples
+    --------
+    >>> probability(0.0512), probability(1e-7)
+    ('0.051', '< 0.0001')
+    """
+    if value is None:
+        return "none left"
+    return "< 0.0001" if value < 1e-4 else f"{value:.2g}"
+
+
+def p_words(value: float) -> str:
+    """A p value with its sign.
+
+    Examples
+    --------
+    >>> p_words(0.0512), p_words(1e-7)
+    ('p = 0.051', 'p < 0.0001')
+    """
+    text = probability(value)
+    return f"p {text}" if text.startswith("<") else f"p = {text}"
+
+
+def with_error(value: Fraction | float, sd: Fraction | float) -> str:
+    """Value ± standard deviation: the latter in two digits, the value to the same place.
+
+    Parameters
+    ----------
+    value, sd : Fraction or float
+        Number and standard deviation in one unit.
+
+    Returns
+    -------
+    str
+        Text; without the error where there is none.
+
+    Examples
+    --------
+    >>> with_error(1.23456, 0.0512), with_error(1234.5, 150.2), with_error(2, 0)
+    ('1.235±0.051', '1234±150', '2')
+    """
+    size = float(sd)
+    if not size:
+        return figure(value)
+    places = max(0, 1 - floor(log10(size)))
+    return f"{float(value):.{places}f}±{size:.{places}f}"

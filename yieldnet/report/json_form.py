@@ -6,6 +6,7 @@ import json
 from fractions import Fraction
 from typing import TYPE_CHECKING, Any
 
+from yieldnet.report.atp_yield_view import atp_yield_form
 from yieldnet.report.view import equation_text
 from yieldnet.report.why_view import limit_words, relaxation_words
 
@@ -13,6 +14,7 @@ if TYPE_CHECKING:
     from collections.abc import Iterable
 
     from yieldnet.audit.audit import AuditResult
+    from yieldnet.balance.redundancy import DataTest
     from yieldnet.foundation.findings import Finding
     from yieldnet.optimum.ranges import Range
     from yieldnet.prediction.certificate import Certificate
@@ -23,7 +25,9 @@ __all__ = [
     "as_text",
     "audit_form",
     "findings_form",
+    "form_of_test",
     "prediction_form",
+    "range_form",
     "refused_form",
     "unread_audit_form",
 ]
@@ -45,7 +49,8 @@ def _exact(value: Fraction | None) -> str | None:
     return None if value is None else str(value)
 
 
-def _range(value: Range | None) -> dict[str, Any] | None:
+def range_form(value: Range | None) -> dict[str, Any] | None:
+    """Form of a range, floats beside fractions; ``None`` for no range."""
     if value is None:
         return None
     return {
@@ -53,6 +58,20 @@ def _range(value: Range | None) -> dict[str, Any] | None:
         "high": _number(value.high),
         "exact_low": _exact(value.low),
         "exact_high": _exact(value.high),
+    }
+
+
+def form_of_test(test: DataTest) -> dict[str, Any]:
+    """Form of a chi-square test of measured values."""
+    return {
+        "layer": test.layer,
+        "statistic": float(test.statistic),
+        "exact": str(test.statistic),
+        "degrees": test.degrees,
+        "level": test.level,
+        "limit": test.limit,
+        "p_value": test.p_value,
+        "passed": test.passed,
     }
 
 
@@ -111,6 +130,8 @@ def refused_form(findings: Iterable[Finding]) -> dict[str, Any]:
         "not_offered": None,
         "fluxes": None,
         "proof": None,
+        "data_tests": [],
+        "y_atp": None,
         "findings": findings_form(findings),
         "assumptions": [],
     }
@@ -166,7 +187,7 @@ def prediction_form(result: Prediction) -> dict[str, Any]:
             for item in result.recoveries
         ],
         respiratory_quotient=_number(result.respiratory_quotient),
-        net_carbon_dioxide=_range(result.net_carbon_dioxide),
+        net_carbon_dioxide=range_form(result.net_carbon_dioxide),
         assumptions=[
             {
                 "text": item.text,
@@ -189,11 +210,21 @@ def prediction_form(result: Prediction) -> dict[str, Any]:
         form["equation"] = {
             "text": equation_text(result),
             "terms": [
-                {"compound": term.compound, "side": str(term.side), **(_range(term.range) or {})}
+                {
+                    "compound": term.compound,
+                    "side": str(term.side),
+                    **(range_form(term.range) or {}),
+                }
                 for term in result.terms
             ],
         }
     form.update(_why(result))
+    form["data_tests"] = [form_of_test(item) for item in result.tests]
+    if result.y_atp is not None:
+        form["y_atp"] = {
+            **(range_form(result.y_atp.range) or {}),
+            **atp_yield_form(result.y_atp),
+        }
     need = result.carbon_dioxide_need
     if need is not None:
         form["carbon_dioxide_need"] = {
@@ -275,7 +306,7 @@ def _why(result: Prediction) -> dict[str, Any]:
                     "reaction": item.reaction,
                     "flux": float(item.flux),
                     "exact": str(item.flux),
-                    **(_range(item.range) or {}),
+                    **(range_form(item.range) or {}),
                 }
                 for item in result.fluxes.answers
             ],
@@ -337,9 +368,9 @@ def _coefficient(item: CoefficientAnswer) -> dict[str, Any]:
         "unit": "mol/mol",
         "measured": measured,
         "reconciled": reconciled,
-        "elements": _range(item.elements),
-        "network": _range(item.network),
-        "at_aim": _range(item.at_aim),
+        "elements": range_form(item.elements),
+        "network": range_form(item.network),
+        "at_aim": range_form(item.at_aim),
         "percent": None if item.percent is None else float(100 * item.percent),
         "status": str(item.status),
     }

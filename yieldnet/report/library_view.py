@@ -16,23 +16,35 @@ from yieldnet.chemistry.library import (
     library_names,
 )
 from yieldnet.model.network import BIOMASS, Direction
+from yieldnet.report.energy_lines import energy_form, energy_lines
 from yieldnet.report.figures import figure, percent
 from yieldnet.report.table import Table
 from yieldnet.report.text import wrapped
 
 if TYPE_CHECKING:
+    from collections.abc import Sequence
+
     from yieldnet.model.network import Network
+    from yieldnet.model.reproduction import Reproduction
+    from yieldnet.prediction.reproduce import Reproduced
+
+    Shelved = tuple[str, Network, tuple[Reproduction, ...]]
 
 __all__ = [
     "compound_form",
     "compound_lines",
     "compounds_table",
     "find_entries",
+    "found_text",
     "network_form",
     "network_lines",
     "networks_table",
+    "reproduced_form",
+    "reproduced_table",
 ]
 
+_LONGEST_FRACTION = 11
+"""Longest fraction that is read at a glance; a longer one is shown as a decimal [characters]."""
 Entry = CompoundEntry | BiomassEntry
 Lines = list[tuple[str, str | None]]
 
@@ -109,6 +121,7 @@ def compound_lines(entry: Entry) -> Lines:
         if formula["N"]:
             text += f" ({reference} as reference)"
         lines.append((text, None))
+    lines += energy_lines(entry)
     status = f" ({entry.status})" if isinstance(entry, BiomassEntry) else ""
     lines.append((wrapped(f"source               {entry.source}{status}", "  "), "dim"))
     lines.append(("  atomic weights       IUPAC abridged standard atomic weights", "dim"))
@@ -134,6 +147,7 @@ def compound_form(entry: Entry) -> dict[str, Any]:
     else:
         ash = None if entry.ash is None else float(entry.ash)
         form.update(kind=BIOMASS, ash=ash, status=entry.status)
+    form.update(energy_form(entry))
     return form
 
 
@@ -141,18 +155,147 @@ def _crossing(network: Network, direction: Direction) -> list[str]:
     return [name for name, way in network.crossing if way is direction]
 
 
-def networks_table(chosen: list[tuple[str, Network]]) -> Table:
-    """Shipped networks: name, size, title."""
+def _substrates(network: Network) -> tuple[str, ...]:
+    if network.meant_for is not None:
+        return network.meant_for.substrates
+    return tuple(_crossing(network, Direction.CONSUMED))
+
+
+def _products(network: Network) -> tuple[str, ...]:
+    if network.meant_for is not None:
+        return network.meant_for.products
+    return tuple(_crossing(network, Direction.PRODUCED))
+
+
+def networks_table(chosen: Sequence[Shelved]) -> Table:
+    """Networks as a table: what each is meant for, its size, how many values it reproduces.
+
+    Parameters
+    ----------
+    chosen : sequence of (str, Network, tuple of Reproduction)
+        Name, network and the values it says it gives again.
+
+    Returns
+    -------
+    Table
+        One row a network.
+    """
     return Table(
         title="Shipped networks",
-        columns=("name", "reactions", "what it is"),
-        rows=tuple((name, str(len(network.reactions)), network.title) for name, network in chosen),
-        note="'yieldnet networks NAME' shows one in full; a case names it in 'network:'.",
+        columns=("name", "substrates", "products", "reactions", "checked"),
+        rows=tuple(
+            (
+                name,
+                ", ".join(_substrates(network)),
+                ", ".join(_products(network)),
+                str(len(network.reactions)),
+                str(len(reproductions)),
+            )
+            for name, network, reproductions in chosen
+        ),
+        note="Checked: how many values with a source the network gives again; 'yieldnet networks"
+        " NAME --check' compares them. 'yieldnet networks NAME' shows one in full; a case names it"
+        " in 'network:'.",
     )
 
 
-def network_lines(name: str, network: Network) -> Lines:
-    """One network in full: scope, crossing compounds, groups, strains, parameters, reactions."""
+def _with_unit(text: str, reproduction: Reproduction) -> str:
+    return f"{text} {reproduction.unit}"
+
+
+def found_text(item: Reproduced) -> str:
+    """What came out: exact beside an exact value, with one digit more beside a decimal."""
+    if item.found is None:
+        return item.outcome.value
+    last = item.reproduction.last_place
+    if last is None:
+        exact = str(item.found)
+        return exact if len(exact) <= _LONGEST_FRACTION else f"{float(item.found):.9g}"
+    places = max(0, len(str(int(1 / last))))
+    return f"{float(item.found):.{places}f}"
+
+
+def reproduced_table(name: str, found: Sequence[Reproduced]) -> Table:
+    """What a network was to reproduce beside what came out.
+
+    Parameters
+    ----------
+    name : str
+        Name of the network.
+    found : sequence of Reproduced
+        The values.
+
+    Returns
+    -------
+    Table
+        One row an entry.
+    """
+    wrong = sum(not item.agrees for item in found)
+    verdict = f"{wrong} of {len(found)} do not agree." if wrong else f"All {len(found)} agree."
+    return Table(
+        title=f"Values that {name} reproduces",
+        columns=("name", "expected", "found", "agrees", "source"),
+        rows=tuple(
+            (
+                item.name,
+                _with_unit(item.reproduction.written.text, item.reproduction),
+                found_text(item),
+                "yes" if item.agrees else "no",
+                " ".join(item.source.split()),
+            )
+            for item in found
+        ),
+        note=verdict if found else "The file has no 'reproduces', so there is nothing to check.",
+    )
+
+
+def reproduced_form(name: str, found: Sequence[Reproduced]) -> dict[str, Any]:
+    """What a network was to reproduce beside what came out, for JSON."""
+    return {
+        "network": name,
+        "agrees": all(item.agrees for item in found),
+        "values": [
+            {
+                **_reproduction_form(item.reproduction),
+                "status": item.outcome.value,
+                "found": None if item.found is None else float(item.found),
+                "found_exact": None if item.found is None else str(item.found),
+                "agrees": item.agrees,
+            }
+            for item in found
+        ],
+    }
+
+
+def _reproduction_form(item: Reproduction) -> dict[str, Any]:
+    return {
+        "name": item.name,
+        "equation": str(item.case.equation),
+        "aim": str(item.case.aim),
+        "expected": float(item.value),
+        "expected_text": item.written.text,
+        "unit": item.unit,
+        "source": " ".join(item.source.split()),
+    }
+
+
+def network_lines(name: str, network: Network, reproductions: Sequence[Reproduction] = ()) -> Lines:
+    """One network in full, from its scope to its reactions.
+
+    Parameters
+    ----------
+    name : str
+        Its name.
+    network : Network
+        The network.
+    reproductions : sequence of Reproduction
+        The values it says it gives again.
+
+    Returns
+    -------
+    list of (str, str or None)
+        Lines with their style.
+    """
     lines: Lines = [
         (network.title, "bold"),
         (wrapped(f"{name}: {network.file}"), "dim"),
@@ -161,6 +304,9 @@ def network_lines(name: str, network: Network) -> Lines:
     for paragraph in network.about.split("\n"):
         if paragraph.strip():
             lines += [(wrapped(paragraph.strip()), None), ("", None)]
+    if network.meant_for is not None:
+        meant = f"{', '.join(_substrates(network))} to {', '.join(_products(network))}"
+        lines.append((wrapped(f"{'meant for':<12}{meant}", "", " " * 12), None))
     for label, direction in (
         ("taken up", Direction.CONSUMED),
         ("given off", Direction.PRODUCED),
@@ -179,7 +325,23 @@ def network_lines(name: str, network: Network) -> Lines:
         span = f" ({' … '.join(ends)})" if ends else ""
         text = f"{item.name} = {figure(item.value)}{span} {item.unit}".rstrip()
         lines.append((wrapped(text, "", "    "), None))
+    for chosen in network.parameter_sets:
+        values = ", ".join(f"{key} = {figure(value)}" for key, value in chosen.values)
+        if chosen.maintenance is not None:
+            alive = chosen.maintenance
+            rate = f"maintenance {alive.carrier} {alive.written.text} {alive.unit}"
+            values = f"{values}, {rate}" if values else rate
+        about = f"; {' '.join(chosen.about.split())}" if chosen.about else ""
+        text = f"parameter set '{chosen.name}': {values}{about}"
+        lines.append((wrapped(text, "", "    "), None))
+        lines.append((wrapped(f"source: {' '.join(chosen.source.split())}", "    "), "dim"))
     lines.append(("", None))
+    for again in reproductions:
+        text = f"reproduces '{again.name}': {again.case.aim}, {again.written.text} {again.unit}"
+        lines.append((wrapped(text, "", "    "), None))
+        lines.append((wrapped(f"source: {' '.join(again.source.split())}", "    "), "dim"))
+    if reproductions:
+        lines.append(("", None))
     for reaction in network.reactions:
         group = f" [{reaction.group}]" if reaction.group else ""
         lines.append((f"{reaction.name}{group}", "bold"))
@@ -192,17 +354,36 @@ def network_lines(name: str, network: Network) -> Lines:
     return lines
 
 
-def network_form(name: str, network: Network) -> dict[str, Any]:
-    """One network for JSON."""
+def network_form(
+    name: str, network: Network, reproductions: Sequence[Reproduction] = ()
+) -> dict[str, Any]:
+    """One network for JSON, with the values it says it gives again."""
+    meant = network.meant_for
     return {
         "name": name,
         "title": network.title,
         "about": " ".join(network.about.split()),
+        "meant_for": None
+        if meant is None
+        else {"substrates": list(meant.substrates), "products": list(meant.products)},
         "taken_up": _crossing(network, Direction.CONSUMED),
         "given_off": _crossing(network, Direction.PRODUCED),
         "either_way": _crossing(network, Direction.EITHER),
         "groups": list(network.groups()),
         "strains": {item.name: list(item.off) for item in network.strains},
         "parameters": {item.name: float(item.value) for item in network.parameters},
+        "parameter_sets": [
+            {
+                "name": item.name,
+                "values": {key: float(value) for key, value in item.values},
+                "maintenance_mol_per_g_h": None
+                if item.maintenance is None
+                else float(item.maintenance.rate_mol_per_gram_hour),
+                "about": " ".join(item.about.split()),
+                "source": " ".join(item.source.split()),
+            }
+            for item in network.parameter_sets
+        ],
+        "reproduces": [_reproduction_form(item) for item in reproductions],
         "reactions": {item.name: str(item.equation) for item in network.reactions},
     }

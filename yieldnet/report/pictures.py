@@ -7,15 +7,13 @@ with arrows and says so.
 
 from __future__ import annotations
 
-import os
 import textwrap
 from dataclasses import dataclass, field
 from itertools import pairwise
 from math import hypot
-from pathlib import Path
-from tempfile import NamedTemporaryFile
 from typing import TYPE_CHECKING, Any
 
+from yieldnet.report.picture_file import COLOURS, INK, save_picture
 from yieldnet.report.tradeoff_view import (
     axis_label,
     corner_name,
@@ -28,22 +26,18 @@ from yieldnet.studies.tradeoff import Change
 
 if TYPE_CHECKING:
     from collections.abc import Iterable, Sequence
+    from pathlib import Path
 
     from matplotlib.axes import Axes
     from matplotlib.figure import Figure
 
     from yieldnet.studies.tradeoff import Region, Tradeoff
 
-__all__ = ["PICTURES", "draw_tradeoff", "save_tradeoff"]
+__all__ = ["draw_tradeoff", "save_tradeoff"]
 
-PICTURES = (".svg", ".png")
-"""Endings of the files that can be written."""
 Place = tuple[float, float]
 _Line = tuple[Place, Place]
 
-# Okabe and Ito's colours for every kind of colour vision, the blues darkened so that labels can be
-# read, in an order in which neighbours differ in grey print, too.
-_COLOURS = ("#004c7f", "#d55e00", "#3d9bd1", "#000000", "#cc79a7", "#009e73")
 _LINES: tuple[Any, ...] = (
     "-",
     (0, (6, 2)),
@@ -53,22 +47,11 @@ _LINES: tuple[Any, ...] = (
     (0, (7, 2, 1.5, 2, 1.5, 2)),
 )
 _MARKS = ("o", "s", "^", "D", "v", "P")
-_INK = "#333333"
 _SIZE = (6.4, 4.8)
-_DOTS_PER_INCH = 200
 _REACH = 0.35
 """Length of an arrow without end, as a share of what is drawn of the rest [-]."""
 _FAR = 25.0
 """Distance from which a label is as clear of lines as need be [pt]."""
-_STYLE: dict[Any, Any] = {
-    "font.family": "DejaVu Sans",
-    "font.size": 9,
-    "svg.hashsalt": "yieldnet",  # the same picture gives the same file
-    "axes.edgecolor": _INK,
-    "axes.labelcolor": _INK,
-    "xtick.color": _INK,
-    "ytick.color": _INK,
-}
 
 
 def save_tradeoff(result: Tradeoff, path: Path, replace: bool = False) -> None:
@@ -79,7 +62,7 @@ def save_tradeoff(result: Tradeoff, path: Path, replace: bool = False) -> None:
     result : Tradeoff
         The trade-off.
     path : Path
-        File that ends in one of :data:`PICTURES`.
+        File that ends in one of :data:`~yieldnet.report.picture_file.PICTURES`.
     replace : bool
         Whether a file of that name may be replaced.
 
@@ -90,38 +73,7 @@ def save_tradeoff(result: Tradeoff, path: Path, replace: bool = False) -> None:
     FileExistsError
         If there is such a file and it may not be replaced.
     """
-    from matplotlib import rc_context
-
-    if path.suffix not in PICTURES:
-        raise ValueError(f"{path.name!r} does not end in {' or '.join(PICTURES)}")
-    kind = path.suffix.removeprefix(".")
-    with NamedTemporaryFile(dir=path.parent, suffix=path.suffix, delete=False) as file:
-        half = Path(file.name)
-    try:
-        with rc_context(_STYLE):
-            draw_tradeoff(result).savefig(
-                half,
-                format=kind,
-                dpi=_DOTS_PER_INCH,
-                bbox_inches="tight",
-                # No date and no version, so that the same answer is the same file.
-                metadata={"Date": None} if kind == "svg" else {"Software": None},
-            )
-        half.chmod(0o666 & ~_mask())
-        if replace:
-            half.replace(path)
-        else:
-            # A link fails where a file is already, even if it came a moment ago.
-            os.link(half, path)
-    finally:
-        half.unlink(missing_ok=True)
-
-
-def _mask() -> int:
-    """What the user withholds from new files; it can only be read by setting it."""
-    mask = os.umask(0)
-    os.umask(mask)
-    return mask
+    save_picture(lambda: draw_tradeoff(result), path, replace)
 
 
 def draw_tradeoff(result: Tradeoff) -> Figure:
@@ -149,10 +101,10 @@ def draw_tradeoff(result: Tradeoff) -> Figure:
     axes.set_ylabel(axis_label(result, result.y))
     alone = len(result.regions) == 1
     pad = 22 if alone else 8
-    axes.set_title(tradeoff_title(result), loc="left", fontweight="bold", color=_INK, pad=pad)
+    axes.set_title(tradeoff_title(result), loc="left", fontweight="bold", color=INK, pad=pad)
     if alone:
         title = textwrap.shorten(result.regions[0].case.title, 90, placeholder=" …")
-        axes.text(0, 1.02, title, transform=axes.transAxes, va="bottom", color=_INK, fontsize=8.5)
+        axes.text(0, 1.02, title, transform=axes.transAxes, va="bottom", color=INK, fontsize=8.5)
     rims = _rims(result)
     _set_limits(axes, [at for rim in rims for at in rim])
     for place, (region, rim) in enumerate(zip(result.regions, rims, strict=True)):
@@ -207,11 +159,11 @@ def _set_limits(axes: Axes, places: Sequence[Place]) -> None:
         limit(low if low == 0 else low - 0.08 * span, high + 0.12 * span)
     for axis, line in ((0, axes.axvline), (1, axes.axhline)):
         if (axes.get_xlim(), axes.get_ylim())[axis][0] < 0:
-            line(0, color=_INK, linewidth=0.6, zorder=1)
+            line(0, color=INK, linewidth=0.6, zorder=1)
 
 
 def _draw_region(axes: Axes, region: Region, rim: Sequence[Place], place: int) -> None:
-    colour, line = _COLOURS[place % 6], _LINES[(place + place // 6) % 6]
+    colour, line = COLOURS[place % 6], _LINES[(place + place // 6) % 6]
     xs, ys = [at[0] for at in rim], [at[1] for at in rim]
     if len(rim) > 2 and not region.polygon.rays:
         axes.fill(xs, ys, color=colour, alpha=0.07, linewidth=0, zorder=2)
@@ -332,14 +284,14 @@ def _write_labels(axes: Axes, result: Tradeoff, rims: Sequence[Sequence[Place]])
     for place, region in enumerate(result.regions):
         for number, at in enumerate(_points(axes, _places(region))):
             # Corners that cases share are named together.
-            entry = (corner_name(result, place, number), at, _COLOURS[place % 6])
+            entry = (corner_name(result, place, number), at, COLOURS[place % 6])
             names.setdefault((round(at[0]), round(at[1])), []).append(entry)
     for shared in names.values():
         text, colours = " ".join(name for name, _, _ in shared), {item[2] for item in shared}
-        colour = colours.pop() if len(colours) == 1 else _INK
+        colour = colours.pop() if len(colours) == 1 else INK
         labels.write(text, [shared[0][1]], 5.5, color=colour, fontsize=8)
     for place, (region, rim) in enumerate(zip(result.regions, drawn, strict=True)):
-        colour = _COLOURS[place % 6]
+        colour = COLOURS[place % 6]
         if region.polygon.rays:
             if not rim:
                 frame = axes.get_window_extent()
@@ -359,12 +311,12 @@ def _write_labels(axes: Axes, result: Tradeoff, rims: Sequence[Sequence[Place]])
 def _write_switches(axes: Axes, labels: _Labels, region: Region) -> None:
     """What appears, vanishes or turns along the edges of the only case."""
     places = _places(region)
-    style: dict[str, Any] = {"color": _INK, "fontsize": 7.5}
+    style: dict[str, Any] = {"color": INK, "fontsize": 7.5}
     for edge in region.edges:
         for item in edge.switches:
             if item.change is Change.TURNS:
                 at = (float(item.places[0][0]), float(item.places[0][1]))
-                axes.plot(*at, marker="d", markersize=5, color=_COLOURS[0], zorder=4)
+                axes.plot(*at, marker="d", markersize=5, color=COLOURS[0], zorder=4)
                 drawn = _points(axes, [at])
                 labels.write(turn_words(region, edge, item), drawn, 6, must=False, **style)
     for edge in region.edges:
@@ -380,7 +332,7 @@ def _write_switches(axes: Axes, labels: _Labels, region: Region) -> None:
             xycoords="axes fraction",
             textcoords="offset points",
             ha="right",
-            color=_INK,
+            color=INK,
             fontsize=7,
             fontstyle="italic",
         )

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import textwrap
 from contextlib import contextmanager
+from itertools import zip_longest
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
@@ -12,14 +13,20 @@ if TYPE_CHECKING:
     from rich.console import Console
 
     from yieldnet.foundation.findings import Finding
+    from yieldnet.rates.result import RateResult
+    from yieldnet.report.data_view import DataView
+    from yieldnet.report.plant_view import PlantView
     from yieldnet.report.table import Table
     from yieldnet.report.view import PredictionView
 
 __all__ = [
     "WIDTH",
     "console",
+    "print_data",
     "print_findings",
+    "print_growth",
     "print_prediction",
+    "print_rates",
     "print_table",
     "progress",
     "wrapped",
@@ -85,10 +92,8 @@ def print_table(out: Console, table: Table) -> None:
         max(len(cell) for cell in (heading, *(row[j] for row in table.rows)))
         for j, heading in enumerate(table.columns)
     ]
-    # The widest column gives way where the table would not fit.
-    widest = widths.index(max(widths))
     taken = sum(widths) + 2 * len(widths) - 1 + (_BAR + 2 if table.bars else 0)
-    widths[widest] -= max(0, taken - WIDTH)
+    _narrow(widths, _longest_words(table), taken - WIDTH)
     right = [
         bool(heading) and all(_is_figure(row[j]) for row in table.rows)
         for j, heading in enumerate(table.columns)
@@ -103,16 +108,35 @@ def print_table(out: Console, table: Table) -> None:
     if any(table.columns):
         out.print(line(table.columns).rstrip(), style="dim")
     for i, row in enumerate(table.rows):
-        pieces = textwrap.wrap(row[widest], widths[widest]) or [""]
-        text = line((*row[:widest], pieces[0], *row[widest + 1 :]))
-        if table.bars:
-            text += "  " + "▪" * round(_BAR * table.bars[i])
-        out.print(text.rstrip())
-        for piece in pieces[1:]:
-            blank = ("",) * len(row)
-            out.print(line((*blank[:widest], piece, *blank[widest + 1 :])).rstrip())
+        cells = [
+            textwrap.wrap(cell, width, break_on_hyphens=False) if len(cell) > width else [cell]
+            for cell, width in zip(row, widths, strict=True)
+        ]
+        for place, pieces in enumerate(zip_longest(*cells, fillvalue="")):
+            text = line(pieces)
+            if table.bars and place == 0:
+                text += "  " + "▪" * round(_BAR * table.bars[i])
+            out.print(text.rstrip())
     if table.note:
         out.print(wrapped(table.note, "  "), style="dim")
+
+
+def _longest_words(table: Table) -> list[int]:
+    return [
+        max(
+            len(word)
+            for cell in (heading, *(row[j] for row in table.rows))
+            for word in [*cell.split(), ""]
+        )
+        for j, heading in enumerate(table.columns)
+    ]
+
+
+def _narrow(widths: list[int], least: list[int], excess: int) -> None:
+    """Take width from the widest column that can give way without breaking a word, step by step."""
+    for _ in range(excess):
+        able = [j for j, width in enumerate(widths) if width > least[j]] or range(len(widths))
+        widths[max(able, key=lambda j: widths[j])] -= 1
 
 
 def _is_figure(cell: str) -> bool:
@@ -200,12 +224,147 @@ def print_prediction(out: Console, view: PredictionView, findings: Iterable[Find
         out.print()
         for remark in view.remarks:
             out.print(wrapped(remark, "", "  "))
+    _print_end(out, findings, view.assumptions)
+
+
+def _print_end(
+    out: Console, findings: Iterable[Finding], assumptions: Iterable[tuple[str, str, str]]
+) -> None:
+    """Findings and assumptions, where there are any."""
     kept = list(findings)
     if kept:
         _heading(out, "Findings")
         print_findings(out, kept)
-    if view.assumptions:
+    taken = list(assumptions)
+    if taken:
         _heading(out, "Assumptions")
-        for text, value, source in view.assumptions:
+        for text, value, source in taken:
             words = f"{text}: {value}" if value else text
             out.print(wrapped(f"- {words}" + (f" [{source}]" if source else ""), "  ", "    "))
+
+
+def print_data(out: Console, view: DataView, findings: Iterable[Finding]) -> None:
+    """Print judged data.
+
+    Parameters
+    ----------
+    out : Console
+        Where to.
+    view : DataView
+        What.
+    findings : iterable of Finding
+        Its findings.
+    """
+    out.print(wrapped(view.title), style="bold")
+    out.print(wrapped(view.setting), style="dim")
+    out.print()
+    out.print(wrapped(view.headline, "", "  "), style="bold")
+    if view.aim:
+        out.print(wrapped(view.aim, "", "  "), style="bold")
+    if view.equations:
+        _heading(out, "Equations in which only measured values stand, mol/mol")
+        for text in view.equations:
+            out.print(wrapped(text, "  ", "    "))
+    for table in view.tables:
+        print_table(out, table)
+    if view.next is not None:
+        print_table(out, view.next)
+    if view.remarks:
+        out.print()
+        for remark in view.remarks:
+            out.print(wrapped(remark, "", "  "))
+    _print_end(out, findings, view.assumptions)
+
+
+def print_growth(
+    out: Console,
+    head: tuple[str, str, str],
+    tables: Iterable[Table],
+    findings: Iterable[Finding],
+    assumptions: Iterable[tuple[str, str, str]],
+) -> None:
+    """Print yield against growth rate.
+
+    Parameters
+    ----------
+    out : Console
+        Where to.
+    head : tuple of (str, str, str)
+        Title, setting and headline.
+    tables : iterable of Table
+        Tables in their order.
+    findings : iterable of Finding
+        What is doubtful.
+    assumptions : iterable of (str, str, str)
+        Text, value with unit, source.
+    """
+    title, setting, headline = head
+    out.print(wrapped(title), style="bold")
+    out.print(wrapped(setting), style="dim")
+    out.print()
+    out.print(wrapped(headline, "", "  "), style="bold")
+    for table in tables:
+        print_table(out, table)
+    _print_end(out, findings, assumptions)
+
+
+def print_rates(out: Console, result: RateResult) -> None:
+    """Print the rates of a run.
+
+    Parameters
+    ----------
+    out : Console
+        Where to.
+    result : RateResult
+        What was found.
+    """
+    from yieldnet.report.figures import figure
+    from yieldnet.report.rates_view import rates_headline, rates_tables, state_title
+
+    run = result.run
+    out.print(wrapped(run.title), style="bold")
+    out.print(wrapped(f"{run.kind}; {run.equation}", "", "  "), style="dim")
+    for state in result.states:
+        out.print()
+        title = state_title(result, state)
+        if title:
+            out.print(title, style="bold")
+        out.print(wrapped(rates_headline(result, state), "", "  "), style="bold")
+        for table in rates_tables(result, state):
+            print_table(out, table)
+    taken = [
+        (
+            item.text,
+            "" if item.value is None else f"{figure(item.value)} {item.unit}".strip(),
+            " ".join(item.source.split()),
+        )
+        for item in result.assumptions
+    ]
+    _print_end(out, result.findings, taken)
+
+
+def print_plant(out: Console, view: PlantView) -> None:
+    """Print plant sheets.
+
+    Parameters
+    ----------
+    out : Console
+        Where to.
+    view : PlantView
+        What.
+    """
+    for title, headline in view.headlines:
+        out.print(wrapped(title), style="bold")
+        out.print(wrapped(headline, "  ", "  "))
+    for table in view.tables:
+        print_table(out, table)
+    out.print()
+    out.print(wrapped(view.balance))
+    if view.formulas:
+        _heading(out, "How each figure follows")
+        for text in view.formulas:
+            out.print(wrapped(f"- {text}", "  ", "    "))
+    _print_end(out, view.findings, view.assumptions)
+    _heading(out, "Cautions")
+    for text in view.cautions:
+        out.print(wrapped(f"- {text}", "  ", "    "))

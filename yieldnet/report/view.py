@@ -11,7 +11,8 @@ from yieldnet.foundation.units import UnitError, read_unit, yield_factor
 from yieldnet.model.network import Direction
 from yieldnet.optimum.ranges import Range
 from yieldnet.prediction.layers import switched_off
-from yieldnet.report.figures import figure, percent, range_text, signed
+from yieldnet.report.atp_yield_view import atp_yield_line
+from yieldnet.report.figures import figure, p_words, percent, range_text, signed
 from yieldnet.report.table import Table
 from yieldnet.report.why_view import (
     conflict_lines,
@@ -25,6 +26,7 @@ from yieldnet.report.why_view import (
 
 if TYPE_CHECKING:
     from yieldnet.balance.freedom import Freedom
+    from yieldnet.balance.redundancy import DataTest
     from yieldnet.prediction.result import CoefficientAnswer, Prediction
 
 __all__ = ["UNITS", "PredictionView", "equation_text", "view_of"]
@@ -95,6 +97,8 @@ def view_of(result: Prediction, unit: str = "mol/mol") -> PredictionView:
         Texts in the order of showing.
     """
     tables = [_coefficients(result, unit)] if result.coefficients else []
+    if any(item.measurements for item in result.coefficients):
+        tables.append(_side_by_side(result, unit))
     if result.terms:
         tables.append(_filled(result))
     if result.ladder:
@@ -134,6 +138,8 @@ def _setting(result: Prediction) -> str:
             parts.append(f"strain: {case.strain.name}")
         if case.knock_outs:
             parts.append("knocked out: " + ", ".join(item.name for item in case.knock_outs))
+        if case.parameter_set is not None:
+            parts.append(f"parameter set: {case.parameter_set.name}")
     elif not _has_network(result):
         parts.append("elements alone")
     return "; ".join(parts)
@@ -221,6 +227,45 @@ def _coefficients(result: Prediction, unit: str) -> Table:
         columns=columns,
         rows=tuple(rows),
         note=note.strip(),
+    )
+
+
+def _side_by_side(result: Prediction, unit: str) -> Table:
+    """Measured, reconciled and predicted value of every coefficient that is measured."""
+    rows = []
+    for item in result.coefficients:
+        factor = _factor(item, unit)
+        if not item.measurements or factor is None:
+            continue
+        known, first = item.reconciled, item.measurements[0]
+        mean, sd = (known.mean, known.sd) if known else (first.value, first.sd)
+        predicted = item.at_aim
+        if predicted is None and known is not None:
+            predicted = Range(known.value, known.value)
+        rows.append(
+            (
+                item.compound,
+                figure(mean * factor) + (f"±{figure(sd * factor)}" if sd else " exact"),
+                figure(known.value * factor) if known else "set aside",
+                signed(known.moved_sd) if known and known.sd else "",
+                range_text(_scaled(predicted, factor)),
+            )
+        )
+    notes = [f"{item.layer}: {_test_words(item)}." for item in result.tests]
+    return Table(
+        title=f"Measured, reconciled and predicted, {unit}",
+        columns=("", "measured", "reconciled", "moved s.d.", "predicted"),
+        rows=tuple(rows),
+        note=("Test of the data by " + " ".join(notes)) if notes else "",
+    )
+
+
+def _test_words(test: DataTest) -> str:
+    plural = "s" * (test.degrees != 1)
+    verdict = "agree" if test.passed else "fail"
+    return (
+        f"{verdict} (chi-square {figure(test.statistic)}, {test.degrees} equation{plural},"
+        f" {p_words(test.p_value)})"
     )
 
 
@@ -374,6 +419,8 @@ def _remarks(result: Prediction) -> tuple[str, ...]:
             found.append(f"{words}: " + "; ".join(parts) + ".")
     if result.respiratory_quotient is not None:
         found.append(f"RQ: {figure(result.respiratory_quotient)} mol/mol.")
+    if result.y_atp is not None:
+        found.append(atp_yield_line(result.y_atp))
     net = result.net_carbon_dioxide
     if net is not None:
         found.append(f"Net carbon dioxide, mol/mol: {_net_words(net)}.")
@@ -390,13 +437,6 @@ def _remarks(result: Prediction) -> tuple[str, ...]:
             f" without net uptake {without}."
         )
     found += movement_lines(result)
-    moved = [
-        f"{item.compound} {signed(item.reconciled.moved_sd)}"
-        for item in result.coefficients
-        if item.reconciled is not None and item.reconciled.moved_sd
-    ]
-    if moved:
-        found.append("Reconciled, moved by s.d.: " + ", ".join(moved) + ".")
     return tuple(found)
 
 

@@ -167,6 +167,8 @@ class _Merger:
             ("growth", self.file.growth is not None),
             ("maintenance", self.file.maintenance is not None),
             ("strains", bool(self.file.strains)),
+            ("parameter sets", bool(self.file.parameter_sets)),
+            ("meant for", self.file.meant_for is not None),
         ):
             if there:
                 self.findings.add(
