@@ -18,8 +18,9 @@ from scipy.integrate import solve_ivp  # type: ignore[import-untyped]
 from scipy.stats import binom, chi2, norm  # type: ignore[import-untyped]
 
 from tests.unit.cultivations import AIR, BIOMASS_MASS, addition, cultivation, gas, reading
+from yieldnet.chemistry.vapour import saturation_pressure
 from yieldnet.model.cultivation import DissolvedCarbonDioxide, Series
-from yieldnet.rates.offgas import inorganic_carbon, saturation_pressure
+from yieldnet.rates.offgas import inorganic_carbon
 from yieldnet.rates.rates import find_rates
 
 if TYPE_CHECKING:

@@ -9,11 +9,12 @@ from typing import TYPE_CHECKING, Any
 import pytest
 
 from tests.unit.cultivations import AIR, BIOMASS_MASS, addition, cultivation, gas, reading
+from yieldnet.chemistry.vapour import saturation_pressure
 from yieldnet.foundation.errors import InputError
 from yieldnet.foundation.findings import Severity
 from yieldnet.model.cultivation import DissolvedCarbonDioxide
 from yieldnet.rates.amounts import filled, log_mean
-from yieldnet.rates.offgas import inorganic_carbon, saturation_pressure
+from yieldnet.rates.offgas import inorganic_carbon
 from yieldnet.rates.rates import find_rates
 
 if TYPE_CHECKING:

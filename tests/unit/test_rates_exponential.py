@@ -11,10 +11,11 @@ import pytest
 from scipy.stats import chi2  # type: ignore[import-untyped]
 
 from tests.unit.cultivations import AIR, BIOMASS_MASS, addition, cultivation, gas, reading, shared
+from yieldnet.chemistry.vapour import saturation_pressure
 from yieldnet.foundation.errors import InputError
 from yieldnet.foundation.findings import Severity
 from yieldnet.model.cultivation import DissolvedCarbonDioxide
-from yieldnet.rates.offgas import inorganic_carbon, saturation_pressure
+from yieldnet.rates.offgas import inorganic_carbon
 from yieldnet.rates.rates import find_rates
 from yieldnet.rates.window_model import slopes
 from yieldnet.rates.windows import find_window

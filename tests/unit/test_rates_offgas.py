@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING, Any
 import pytest
 
 from tests.unit.cultivations import addition, cultivation, gas, reading
+from yieldnet.chemistry.vapour import saturation_pressure
 from yieldnet.foundation.errors import InputError
 from yieldnet.foundation.findings import Severity
 from yieldnet.model.cultivation import DissolvedCarbonDioxide, Moisture
@@ -19,7 +20,6 @@ from yieldnet.rates.offgas import (
     inorganic_carbon,
     molar_density,
     outlet_of,
-    saturation_pressure,
 )
 from yieldnet.rates.rates import find_rates
 from yieldnet.rates.values import Values, nominal

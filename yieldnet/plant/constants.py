@@ -5,6 +5,7 @@ from __future__ import annotations
 from fractions import Fraction
 from math import exp
 
+from yieldnet.chemistry.vapour import ICE_POINT, saturation_pressure
 from yieldnet.foundation.sourced import SourcedValue
 from yieldnet.plant.sheet import COMMON_PRACTICE
 
@@ -16,8 +17,6 @@ __all__ = [
     "HENRY_TEMPERATURE",
     "HIGHEST_KLA",
     "HIGHEST_UPTAKE",
-    "ICE_POINT",
-    "MAGNUS_SOURCE",
     "MOLAR_VOLUME",
     "OXYGEN_IN_AIR",
     "SMALLEST_SEED",
@@ -25,16 +24,14 @@ __all__ = [
     "VAPORISATION",
     "VAPORISATION_SLOPE",
     "henry_constant",
-    "saturation_pressure",
     "vaporisation_heat",
+    "vapour_pressure",
 ]
 
 _SANDER = (
     "Sander (2023) Atmospheric Chemistry and Physics 23:10901, oxygen, value of most reviews (seen"
     " at henrys-law.org)"
 )
-MAGNUS_SOURCE = "Magnus form of WMO-No. 8, annex 4.B: over water, -45 to 60 degC"
-"""Source of the saturation pressure."""
 _STEAM = "straight line through the steam tables from 0 to 60 degC (from memory)"
 
 HENRY_CONSTANT = SourcedValue(value=Fraction("1.3e-5"), unit="mol/m3/Pa", source=_SANDER)
@@ -43,8 +40,6 @@ HENRY_TEMPERATURE = SourcedValue(value=Fraction(1500), unit="K", source=_SANDER)
 """Slope of ln(solubility) over 1/T (Sander 2023)."""
 HENRY_REFERENCE = SourcedValue(value=Fraction("298.15"), unit="K", source=_SANDER)
 """Reference temperature of the solubility (Sander 2023)."""
-ICE_POINT = SourcedValue(value=Fraction("273.15"), unit="K", source="degree Celsius (SI)")
-"""0 degC in kelvin (SI)."""
 ATMOSPHERE = SourcedValue(
     value=Fraction("1.01325"), unit="bar", source="standard atmosphere, by definition"
 )
@@ -109,8 +104,8 @@ def henry_constant(celsius: float) -> float:
     return float(HENRY_CONSTANT.value) * exp(float(HENRY_TEMPERATURE.value) * step)
 
 
-def saturation_pressure(celsius: float) -> float:
-    """Saturation pressure of water vapour.
+def vapour_pressure(celsius: float) -> float:
+    """Saturation pressure of water vapour, in the units of a plant.
 
     Parameters
     ----------
@@ -124,18 +119,14 @@ def saturation_pressure(celsius: float) -> float:
 
     Notes
     -----
-    ``p = 0.006112 bar exp(17.62 t / (243.12 + t))``, t in degC.
-
-    References
-    ----------
-    WMO-No. 8, Guide to Instruments and Methods of Observation, annex 4.B.
+    See :func:`yieldnet.chemistry.vapour.saturation_pressure`.
 
     Examples
     --------
-    >>> f"{saturation_pressure(37):.4f}"
+    >>> f"{vapour_pressure(37):.4f}"
     '0.0627'
     """
-    return 0.006112 * exp(17.62 * celsius / (243.12 + celsius))
+    return saturation_pressure(celsius + float(ICE_POINT.value)) / 100
 
 
 def vaporisation_heat(celsius: float) -> float:

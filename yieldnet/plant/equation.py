@@ -13,9 +13,10 @@ from typing import TYPE_CHECKING
 from yieldnet.foundation.errors import InputError
 from yieldnet.foundation.findings import Findings, Severity
 from yieldnet.foundation.sourced import Assumption
-from yieldnet.model.binding import bind
 from yieldnet.model.case import Aim, AimDirection, EnergySurplus
-from yieldnet.model.network import BIOMASS, Direction
+from yieldnet.model.network import BIOMASS
+from yieldnet.plant.sheet import Input
+from yieldnet.prediction.overall import one_equation
 from yieldnet.prediction.result import Outcome
 
 if TYPE_CHECKING:
@@ -80,41 +81,27 @@ def settled_equation(case: Case, answer: Prediction, findings: Findings) -> Amou
             hint="Run 'yieldnet predict' on it: the reason is named there.",
         )
         raise InputError(findings.sorted())
-    open_names = [item.compound for item in answer.terms if not item.range.single]
-    if answer.fluxes is not None and case.network is not None:
-        bound, _ = bind(case.network, case.overrides())
-        total: dict[str, Fraction] = {}
-        for item in answer.fluxes.answers:
-            reaction = bound.reaction(item.reaction)
-            assert reaction is not None
-            for name, amount in reaction.coefficients:
-                total[name] = total.get(name, _ZERO) + item.flux * amount
-        if open_names:
-            findings.add(
-                "YN869",
-                f"other best points have other {', '.join(open_names)}",
-                case.span,
-                hint="The plant is that of the point of least total flux; measure or demand these"
-                " to settle them.",
-                severity=Severity.NOTE,
-            )
-        return tuple((item.name, total.get(item.name, _ZERO)) for item in case.compounds)
-    if open_names:
+    found, several = one_equation(case, answer)
+    if found is None:
         findings.extend(item for item in answer.findings if item.code != _ASKED_IN_VAIN)
         findings.add(
             "YN913",
-            f"the overall equation is not settled: {', '.join(open_names)} can take many values",
+            f"the overall equation is not settled: {', '.join(several)} can take many values",
             case.span,
             hint="Measure or fix these"
             + (", or give the case an aim." if case.network is not None else "."),
         )
         raise InputError(findings.sorted())
-    found = []
-    for term in answer.terms:
-        assert term.range.low is not None
-        sign = -1 if term.side is Direction.CONSUMED else 1
-        found.append((term.compound, sign * term.range.low))
-    return tuple(found)
+    if several:
+        findings.add(
+            "YN869",
+            f"other best points have other {', '.join(several)}",
+            case.span,
+            hint="The plant is that of the point of least total flux; measure or demand these to"
+            " settle them.",
+            severity=Severity.NOTE,
+        )
+    return found
 
 
 def growth_case(case: Case) -> Case:
@@ -156,12 +143,15 @@ class GrowthShare:
         Dry weight at the end of growth [kg/m3].
     cells_rule : str
         Where it comes from, in words.
+    cells_inputs : tuple of Input
+        What it is made from; empty if it is stated.
     growth, production : Fraction
         Substrate of each phase [mol/m3].
     """
 
     cells: Fraction
     cells_rule: str
+    cells_inputs: tuple[Input, ...]
     growth: Fraction
     production: Fraction
 
@@ -224,11 +214,16 @@ def growth_share(
         raise InputError(findings.sorted())
     if phases.cells is not None:
         cells, rule = phases.cells.value, "as stated"
+        inputs: tuple[Input, ...] = ()
     else:
         assert productivity is not None
         assert case.substrate_uptake is not None
         per_hour = productivity * _GRAMS / mass / production[plant.product]
         cells = per_hour / case.substrate_uptake.value / _GRAMS
+        inputs = (
+            Input(name="substrate used by production", value=per_hour, unit="mol/m3/h"),
+            Input(name="substrate uptake", value=case.substrate_uptake.value, unit="mol/g/h"),
+        )
         rule = "substrate used per volume and h of production / substrate uptake of the cells"
     of_growth = cells * _GRAMS / grams
     titre = plant.titre.value * _GRAMS / mass
@@ -241,7 +236,13 @@ def growth_share(
             hint="Lower the cells or raise the titre.",
         )
         raise InputError(findings.sorted())
-    return GrowthShare(cells=cells, cells_rule=rule, growth=of_growth, production=of_production)
+    return GrowthShare(
+        cells=cells,
+        cells_rule=rule,
+        cells_inputs=inputs,
+        growth=of_growth,
+        production=of_production,
+    )
 
 
 def together(production: Amounts, growth: Mapping[str, Fraction], share: Fraction) -> Amounts:

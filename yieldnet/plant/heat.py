@@ -10,16 +10,16 @@ from fractions import Fraction
 from typing import TYPE_CHECKING
 
 from yieldnet.chemistry.thermochemistry import CALORIMETRIC_OXYGEN_HEAT, TEXTBOOK_OXYGEN_HEAT
-from yieldnet.foundation.findings import Findings, Severity
+from yieldnet.chemistry.vapour import MAGNUS_SOURCE
+from yieldnet.foundation.findings import Findings
 from yieldnet.plant.constants import (
     ATMOSPHERE,
-    MAGNUS_SOURCE,
     VAPORISATION,
-    saturation_pressure,
     vaporisation_heat,
+    vapour_pressure,
 )
 from yieldnet.plant.sheet import Figure, Input
-from yieldnet.prediction.heat import heat_of
+from yieldnet.prediction.heat import heat_of, tell_heat
 
 if TYPE_CHECKING:
     from collections.abc import Mapping
@@ -67,7 +67,7 @@ def evaporation_kw(dry_gas: float, celsius: float, pressure: float) -> float:
     >>> round(evaporation_kw(3600.0, 37.0, 1.01325), 2)
     2.86
     """
-    vapour = saturation_pressure(celsius)
+    vapour = vapour_pressure(celsius)
     water = dry_gas * vapour / (pressure - vapour) * _WATER_MASS / _GRAMS
     return water * vaporisation_heat(celsius) / _SECONDS
 
@@ -112,34 +112,9 @@ def heat_figures(
         Heat of the cells two ways, its parts, cooling duty.
     """
     heat, unknown = heat_of([(item, amounts[item.name]) for item in case.compounds])
+    tell_heat(heat, tuple(unknown), case, findings)
     if heat is None:
-        findings.add(
-            "YN864",
-            f"the heat cannot be told: {', '.join(unknown)} has neither a heat of combustion nor a"
-            " degree of reduction",
-            case.span,
-            hint="Leave salts and bases out of the equation.",
-            severity=Severity.WARNING,
-        )
         return ()
-    if heat.estimated:
-        findings.add(
-            "YN863",
-            f"heat of combustion estimated by the degree of reduction: {', '.join(heat.estimated)}",
-            case.span,
-            hint="Expect an error of some 5 %, of small molecules more.",
-            severity=Severity.NOTE,
-        )
-    apart = heat.apart()
-    if heat.disagree and apart is not None:
-        share = float(100 * apart / abs(heat.by_combustion))
-        findings.add(
-            "YN868",
-            f"heat by combustion and heat by oxygen are {share:+.0f} % apart",
-            case.span,
-            hint="The rule for oxygen holds where nearly all electrons go to it; trust combustion.",
-            severity=Severity.WARNING,
-        )
     found: list[Figure] = []
 
     def add(

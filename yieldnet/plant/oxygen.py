@@ -13,6 +13,7 @@ from math import log
 from typing import TYPE_CHECKING
 
 from yieldnet.chemistry.thermochemistry import CALORIMETRIC_OXYGEN_HEAT, TEXTBOOK_OXYGEN_HEAT
+from yieldnet.chemistry.vapour import MAGNUS_SOURCE
 from yieldnet.foundation.findings import Findings, Severity
 from yieldnet.model.network import BIOMASS
 from yieldnet.plant.constants import (
@@ -20,11 +21,10 @@ from yieldnet.plant.constants import (
     HENRY_CONSTANT,
     HIGHEST_KLA,
     HIGHEST_UPTAKE,
-    MAGNUS_SOURCE,
     MOLAR_VOLUME,
     OXYGEN_IN_AIR,
     henry_constant,
-    saturation_pressure,
+    vapour_pressure,
 )
 from yieldnet.plant.equation import product_mass
 from yieldnet.plant.sheet import Figure, Input, of_value
@@ -204,7 +204,7 @@ def driving_force(celsius: float, pressure: float, oxygen_in_gas: float, dissolv
     >>> round(driving_force(25.0, 1.01325, 0.209476, 0.0), 3)
     0.267
     """
-    dry = (pressure - saturation_pressure(celsius)) * _PASCAL
+    dry = (pressure - vapour_pressure(celsius)) * _PASCAL
     return henry_constant(celsius) * dry * (oxygen_in_gas - dissolved * float(OXYGEN_IN_AIR.value))
 
 

@@ -96,7 +96,13 @@ def vessels_of(plant: Plant, scale: Scale, growth: GrowthShare | None) -> Vessel
         )
     phases = plant.phases
     if phases is not None and growth is not None:
-        cells = add("cells at the end of growth", growth.cells, "kg/m3", growth.cells_rule)
+        cells = add(
+            "cells at the end of growth",
+            growth.cells,
+            "kg/m3",
+            growth.cells_rule,
+            *growth.cells_inputs,
+        )
         add(
             "substrate used by growth",
             growth.share,

@@ -15,12 +15,12 @@ from yieldnet.balance.elements import nitrogen_reference
 from yieldnet.chemistry.formula import FormulaTextError
 from yieldnet.chemistry.gibbs import STANDARD_PH, reaction_gibbs
 from yieldnet.foundation.findings import Findings, Severity
-from yieldnet.model.binding import bind
-from yieldnet.model.network import BIOMASS, Direction
+from yieldnet.model.network import BIOMASS
 from yieldnet.prediction.activities import Activities
 from yieldnet.prediction.assumptions import KEPT
 from yieldnet.prediction.biomass_methods import yield_opinions
-from yieldnet.prediction.heat import heat_of
+from yieldnet.prediction.heat import heat_of, tell_heat
+from yieldnet.prediction.overall import one_equation
 from yieldnet.prediction.predict import Wanted, balance_case, predict_case
 from yieldnet.prediction.result import Outcome
 from yieldnet.prediction.step_energies import step_energies
@@ -166,7 +166,7 @@ def energetics_case(case: Case, engine: str = "glpk") -> Energetics:
     closures = _closures(case, by_name) if amounts else ()
     _tell_closures(closures, case, findings)
     heat, unknown = heat_of(listed) if amounts else (None, ())
-    _tell_heat(heat, unknown, case, findings)
+    tell_heat(heat, unknown, case, findings)
     activities = Activities(case)
     gibbs, parts = _overall(case, by_name, activities, findings)
     route = step_energies(case, answer, activities)
@@ -203,41 +203,27 @@ def _amounts(
     """One overall equation that is best, production positive; empty with a finding."""
     if answer.outcome is not Outcome.SOLVED:
         return ()
-    open_names = [item.compound for item in answer.terms if not item.range.single]
-    if answer.fluxes is not None and case.network is not None:
-        bound, _ = bind(case.network, case.overrides())
-        total: dict[str, Fraction] = {}
-        for item in answer.fluxes.answers:
-            reaction = bound.reaction(item.reaction)
-            assert reaction is not None
-            for name, amount in reaction.coefficients:
-                total[name] = total.get(name, _ZERO) + item.flux * amount
-        if open_names:
-            findings.add(
-                "YN869",
-                f"other best points have other {', '.join(open_names)}",
-                case.span,
-                hint="Heat and Gibbs energy are those of the point of least total flux; measure or"
-                " demand these to settle them.",
-                severity=Severity.NOTE,
-            )
-        return tuple((item.name, total.get(item.name, _ZERO)) for item in case.compounds)
-    if open_names:
+    found, several = one_equation(case, answer)
+    if found is None:
         findings.add(
             "YN870",
-            f"the overall equation is not settled: {', '.join(open_names)} can take many values",
+            f"the overall equation is not settled: {', '.join(several)} can take many values",
             case.span,
             hint="Measure or fix these"
             + (" or give the case an aim." if case.network is not None else "."),
             severity=Severity.WARNING,
         )
         return ()
-    found = []
-    for term in answer.terms:
-        assert term.range.low is not None
-        sign = -1 if term.side is Direction.CONSUMED else 1
-        found.append((term.compound, sign * term.range.low))
-    return tuple(found)
+    if several:
+        findings.add(
+            "YN869",
+            f"other best points have other {', '.join(several)}",
+            case.span,
+            hint="Heat and Gibbs energy are those of the point of least total flux; measure or"
+            " demand these to settle them.",
+            severity=Severity.NOTE,
+        )
+    return found
 
 
 def _closures(case: Case, amounts: Mapping[str, Fraction]) -> tuple[Closure, ...]:
@@ -282,42 +268,6 @@ def _tell_closures(closures: tuple[Closure, ...], case: Case, findings: Findings
                 hint="A heat would hold the error too: write the growth equation in more digits.",
                 severity=Severity.WARNING,
             )
-
-
-def _tell_heat(
-    heat: HeatAnswer | None, unknown: tuple[str, ...], case: Case, findings: Findings
-) -> None:
-    if unknown:
-        findings.add(
-            "YN864",
-            f"the heat cannot be told: {', '.join(unknown)} has neither a heat of combustion nor"
-            " a degree of reduction",
-            case.span,
-            hint="Leave salts and bases out of the equation.",
-            severity=Severity.WARNING,
-        )
-    if heat is None:
-        return
-    if heat.estimated:
-        findings.add(
-            "YN863",
-            f"heat of combustion estimated by the degree of reduction: {', '.join(heat.estimated)}",
-            case.span,
-            hint="Expect an error of some 5 %, of small molecules more.",
-            severity=Severity.NOTE,
-        )
-    apart = heat.apart()
-    if heat.disagree and apart is not None:
-        share = float(100 * apart / abs(heat.by_combustion))
-        findings.add(
-            "YN868",
-            f"heat by combustion and heat by oxygen are {share:+.0f} % apart",
-            case.span,
-            left=f"by combustion {float(heat.by_combustion):.4g} kJ/mol",
-            right=f"by oxygen {float(heat.by_oxygen() or 0):.4g} kJ/mol",
-            hint="The rule for oxygen holds where nearly all electrons go to it; trust combustion.",
-            severity=Severity.WARNING,
-        )
 
 
 def _overall(

@@ -18,6 +18,7 @@ from yieldnet.chemistry.thermochemistry import (
     heat_of_biomass,
     heat_of_combustion,
 )
+from yieldnet.foundation.findings import Severity
 from yieldnet.model.network import BIOMASS
 
 if TYPE_CHECKING:
@@ -25,9 +26,19 @@ if TYPE_CHECKING:
 
     from yieldnet.chemistry.formula import Formula
     from yieldnet.chemistry.thermochemistry import Heat
+    from yieldnet.foundation.findings import Findings
+    from yieldnet.model.case import Case
     from yieldnet.model.network import Compound
 
-__all__ = ["DISAGREEMENT", "HeatAnswer", "HeatTerm", "heat_of", "heat_of_compound", "same_formula"]
+__all__ = [
+    "DISAGREEMENT",
+    "HeatAnswer",
+    "HeatTerm",
+    "heat_of",
+    "heat_of_compound",
+    "same_formula",
+    "tell_heat",
+]
 
 DISAGREEMENT = Fraction(1, 10)
 """Share of the heat from which on two ways to it are said to disagree [-].
@@ -183,3 +194,52 @@ def heat_of(
         grams = amount * biomass.formula.molar_mass / (1 - biomass.ash)
     oxygen = -by_name[_OXYGEN][1] if _OXYGEN in by_name else _ZERO
     return HeatAnswer(terms=tuple(terms), oxygen=oxygen, biomass_grams=grams), ()
+
+
+def tell_heat(
+    heat: HeatAnswer | None, unknown: tuple[str, ...], case: Case, findings: Findings
+) -> None:
+    """Say what of a heat is estimated, in doubt or not to be had.
+
+    Parameters
+    ----------
+    heat : HeatAnswer or None
+        The heat.
+    unknown : tuple of str
+        Compounds without a heat of combustion.
+    case : Case
+        Where the finding stands.
+    findings : Findings
+        Receives it.
+    """
+    if unknown:
+        findings.add(
+            "YN864",
+            f"the heat cannot be told: {', '.join(unknown)} has neither a heat of combustion nor"
+            " a degree of reduction",
+            case.span,
+            hint="Leave salts and bases out of the equation.",
+            severity=Severity.WARNING,
+        )
+    if heat is None:
+        return
+    if heat.estimated:
+        findings.add(
+            "YN863",
+            f"heat of combustion estimated by the degree of reduction: {', '.join(heat.estimated)}",
+            case.span,
+            hint="Expect an error of some 5 %, of small molecules more.",
+            severity=Severity.NOTE,
+        )
+    apart = heat.apart()
+    if heat.disagree and apart is not None:
+        share = float(100 * apart / abs(heat.by_combustion))
+        findings.add(
+            "YN868",
+            f"heat by combustion and heat by oxygen are {share:+.0f} % apart",
+            case.span,
+            left=f"by combustion {float(heat.by_combustion):.4g} kJ/mol",
+            right=f"by oxygen {float(heat.by_oxygen() or 0):.4g} kJ/mol",
+            hint="The rule for oxygen holds where nearly all electrons go to it; trust combustion.",
+            severity=Severity.WARNING,
+        )

@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING
 
 from yieldnet.balance.elements import nitrogen_reference
 from yieldnet.balance.statements import with_point, yield_column
+from yieldnet.model.binding import bind
 from yieldnet.model.network import Direction
 from yieldnet.optimum.answer import Status
 from yieldnet.optimum.problem import Bounds
@@ -21,11 +22,13 @@ if TYPE_CHECKING:
     from yieldnet.prediction.coefficients import AllRanges
     from yieldnet.prediction.ladder import Objective
     from yieldnet.prediction.layers import Layers
+    from yieldnet.prediction.result import Prediction
 
 __all__ = [
     "CARBON_DIOXIDE",
     "carbon_dioxide_need",
     "equation_terms",
+    "one_equation",
     "recoveries_of",
     "respiratory_quotient",
 ]
@@ -176,3 +179,43 @@ def carbon_dioxide_need(
         most=-carbon_dioxide.low,
         without=answer.value if answer.status is Status.OPTIMAL else None,
     )
+
+
+def one_equation(
+    case: Case, answer: Prediction
+) -> tuple[tuple[tuple[str, Fraction], ...] | None, tuple[str, ...]]:
+    """One overall equation of an answer that was solved.
+
+    Parameters
+    ----------
+    case : Case
+        The question.
+    answer : Prediction
+        Its answer, with fluxes where it has a network.
+
+    Returns
+    -------
+    tuple of (str, Fraction) or None
+        Amount of every compound, production positive, basis first: that of least total flux where
+        there are fluxes [mol/mol basis]; ``None`` where none follows.
+    tuple of str
+        Compounds that other points as good have other amounts of.
+    """
+    several = tuple(item.compound for item in answer.terms if not item.range.single)
+    if answer.fluxes is not None and case.network is not None:
+        bound, _ = bind(case.network, case.overrides())
+        total: dict[str, Fraction] = {}
+        for item in answer.fluxes.answers:
+            reaction = bound.reaction(item.reaction)
+            assert reaction is not None
+            for name, amount in reaction.coefficients:
+                total[name] = total.get(name, _ZERO) + item.flux * amount
+        return tuple((item.name, total.get(item.name, _ZERO)) for item in case.compounds), several
+    if several:
+        return None, several
+    found = []
+    for term in answer.terms:
+        assert term.range.low is not None
+        sign = -1 if term.side is Direction.CONSUMED else 1
+        found.append((term.compound, sign * term.range.low))
+    return tuple(found), ()

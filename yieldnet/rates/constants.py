@@ -15,10 +15,6 @@ __all__ = [
     "HENRY_CONSTANT",
     "HENRY_REFERENCE",
     "HENRY_TEMPERATURE",
-    "ICE_POINT",
-    "MAGNUS_FACTOR",
-    "MAGNUS_PRESSURE",
-    "MAGNUS_TEMPERATURE",
 ]
 
 CONFIDENCE = 0.95
@@ -28,10 +24,6 @@ _CODATA = (
     "CODATA 2018: Tiesinga, Mohr, Newell and Taylor (2021) Reviews of Modern Physics 93:025010"
 )
 _SANDER = "Sander (2015) Atmospheric Chemistry and Physics 15:4399, carbon dioxide"
-_MAGNUS = (
-    "WMO-No. 8, Guide to Instruments and Methods of Observation, annex 4.B: over water, -45 to"
-    " 60 degC, pure vapour"
-)
 _HARNED = (
     "Harned and Davis (1943) Journal of the American Chemical Society 65:2030, 0 to 50 degC, no"
     " salt: pK1 = 3404.71 / T + 0.032786 T - 14.8435"
@@ -39,16 +31,6 @@ _HARNED = (
 
 GAS_CONSTANT = SourcedValue(value=Fraction("8.314462618"), unit="J/mol/K", source=_CODATA)
 """Molar gas constant; the exact product of two defined constants, rounded (CODATA 2018)."""
-ICE_POINT = SourcedValue(
-    value=Fraction("273.15"), unit="K", source="definition of the degree Celsius (SI)"
-)
-"""0 degC in kelvin (SI)."""
-MAGNUS_PRESSURE = SourcedValue(value=Fraction("0.6112"), unit="kPa", source=_MAGNUS)
-"""Saturation pressure of water at 0 degC in the Magnus form (WMO-No. 8)."""
-MAGNUS_FACTOR = SourcedValue(value=Fraction("17.62"), unit="-", source=_MAGNUS)
-"""Factor of the exponent in the Magnus form (WMO-No. 8)."""
-MAGNUS_TEMPERATURE = SourcedValue(value=Fraction("243.12"), unit="degC", source=_MAGNUS)
-"""Temperature in the divisor of the Magnus form (WMO-No. 8)."""
 HENRY_CONSTANT = SourcedValue(value=Fraction("3.3e-4"), unit="mol/m3/Pa", source=_SANDER)
 """Solubility of carbon dioxide in water at the reference temperature (Sander 2015)."""
 HENRY_TEMPERATURE = SourcedValue(value=Fraction(2400), unit="K", source=_SANDER)

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
+from yieldnet.chemistry.vapour import MAGNUS_FACTOR, MAGNUS_PRESSURE, MAGNUS_TEMPERATURE
 from yieldnet.foundation.findings import Severity
 from yieldnet.model.case import BAND
 from yieldnet.rates.constants import (
@@ -13,9 +14,6 @@ from yieldnet.rates.constants import (
     GAS_CONSTANT,
     HENRY_CONSTANT,
     HENRY_TEMPERATURE,
-    MAGNUS_FACTOR,
-    MAGNUS_PRESSURE,
-    MAGNUS_TEMPERATURE,
 )
 from yieldnet.rates.offgas import WATER, gas_flows, is_there, reacting, vapour_fractions
 from yieldnet.rates.values import deviation, nominal, place_of, row_count

@@ -13,6 +13,7 @@ from dataclasses import dataclass
 from math import exp
 from typing import TYPE_CHECKING
 
+from yieldnet.chemistry.vapour import saturation_pressure
 from yieldnet.model.case import BAND
 from yieldnet.rates.constants import (
     DISSOCIATION_CONSTANT,
@@ -22,10 +23,6 @@ from yieldnet.rates.constants import (
     HENRY_CONSTANT,
     HENRY_REFERENCE,
     HENRY_TEMPERATURE,
-    ICE_POINT,
-    MAGNUS_FACTOR,
-    MAGNUS_PRESSURE,
-    MAGNUS_TEMPERATURE,
 )
 from yieldnet.rates.values import deviation, nominal
 
@@ -50,7 +47,6 @@ __all__ = [
     "molar_density",
     "outlet_of",
     "reacting",
-    "saturation_pressure",
     "vapour_fractions",
 ]
 
@@ -60,34 +56,6 @@ OXYGEN = "oxygen"
 """Name of the compound that the respiratory quotient divides by."""
 WATER = "water"
 """Name of the compound that moisture stands for."""
-
-
-def saturation_pressure(temperature: float) -> float:
-    """Saturation pressure of water vapour over water.
-
-    Parameters
-    ----------
-    temperature : float
-        Temperature [K].
-
-    Returns
-    -------
-    float
-        Pressure [kPa].
-
-    Notes
-    -----
-    Magnus form of WMO-No. 8, annex 4.B: 0.6112 kPa exp(17.62 t / (243.12 + t)), t in degC. The
-    excess of moist air over pure vapour, 0.4 % near atmospheric pressure, is left out.
-
-    Examples
-    --------
-    >>> round(saturation_pressure(303.15), 3)
-    4.234
-    """
-    celsius = temperature - float(ICE_POINT.value)
-    power = float(MAGNUS_FACTOR.value) * celsius / (float(MAGNUS_TEMPERATURE.value) + celsius)
-    return float(MAGNUS_PRESSURE.value) * exp(power)
 
 
 def molar_density(temperature: float, pressure: float) -> float:
