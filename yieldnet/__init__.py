@@ -21,6 +21,7 @@ if TYPE_CHECKING:
         explain,
         growth,
         knockout,
+        new,
         plant,
         predict,
         rates,
@@ -28,10 +29,12 @@ if TYPE_CHECKING:
         read_network,
         read_run,
         reconcile,
+        report,
         reproduce,
         schema,
         screen,
         tradeoff,
+        verify,
     )
 
 __all__ = [
@@ -47,6 +50,7 @@ __all__ = [
     "explain",
     "growth",
     "knockout",
+    "new",
     "plant",
     "predict",
     "rates",
@@ -54,10 +58,12 @@ __all__ = [
     "read_network",
     "read_run",
     "reconcile",
+    "report",
     "reproduce",
     "schema",
     "screen",
     "tradeoff",
+    "verify",
 ]
 __version__ = "0.1.0"
 

@@ -25,6 +25,9 @@ if TYPE_CHECKING:
     from yieldnet.prediction.reproduce import Reproduced
     from yieldnet.prediction.result import Prediction
     from yieldnet.rates.result import RateResult
+    from yieldnet.report.new_folder import NewStudy
+    from yieldnet.report.study import Study
+    from yieldnet.report.verify import Verification
     from yieldnet.studies.addition_result import AdditionResult
     from yieldnet.studies.coupling import CouplingDesign
     from yieldnet.studies.knockout import KnockOutResult
@@ -43,6 +46,7 @@ __all__ = [
     "explain",
     "growth",
     "knockout",
+    "new",
     "plant",
     "predict",
     "rates",
@@ -50,10 +54,12 @@ __all__ = [
     "read_network",
     "read_run",
     "reconcile",
+    "report",
     "reproduce",
     "schema",
     "screen",
     "tradeoff",
+    "verify",
 ]
 
 
@@ -931,6 +937,199 @@ def plant(
     if refused:
         raise InputError(refused)
     return plant_cases(read, engine)
+
+
+def new(
+    folder: Path,
+    *,
+    network: Path = "",
+    substrate: str = "",
+    product: str = "",
+    plant: bool = True,
+    own_network: bool = False,
+    run: str = "",
+    force: bool = False,
+) -> NewStudy:
+    """Files to start a study from: a commented case that has an answer as it stands.
+
+    Parameters
+    ----------
+    folder : str or path
+        Where they are written; the folder is made if it is not there.
+    network : str or path
+        Name of a shipped network, or path of a network file; if empty, the one shipped network
+        that is meant for substrate and product.
+    substrate, product : str
+        What the case asks about, by name or synonym; if empty, the first that the network is meant
+        for and that works.
+    plant : bool
+        Whether the case has a plant, in placeholders.
+    own_network : bool
+        Whether a copy of the network file is put beside the case.
+    run : {"", "batch", "fed-batch", "chemostat"}
+        Kind of a run file with its sheet, in placeholders; empty for none.
+    force : bool
+        Whether files that are there may be replaced.
+
+    Returns
+    -------
+    NewStudy
+        What was written, and the first answer [mol/mol basis].
+
+    Raises
+    ------
+    InputError
+        If no network or several fit, the product is not made of the substrate, or files are there
+        already; nothing is written then.
+    OSError
+        If the folder cannot be written to.
+
+    Examples
+    --------
+    >>> from tempfile import TemporaryDirectory
+    >>> with TemporaryDirectory() as place:
+    ...     study = new(f"{place}/lysine", network="lysine-coryneform")
+    >>> study.files, study.product, study.best
+    (('case.yaml',), 'L-lysine', Fraction(6, 7))
+    """
+    from pathlib import Path
+
+    from yieldnet.reading.shipped import shipped_names
+    from yieldnet.report.new_folder import write_study
+    from yieldnet.studies.starting_case import start_case
+
+    names = [os.fspath(network)] if os.fspath(network) else list(shipped_names())
+    start = start_case([(name, read_network(name)) for name in names], substrate, product)
+    return write_study(
+        start, Path(folder), plant=plant, own_network=own_network, run=run, force=force
+    )
+
+
+def report(
+    case: Path,
+    *,
+    out: Path | None = None,
+    xlsx: Path | None = None,
+    pictures: Path | None = None,
+    date: str = "",
+    force: bool = False,
+    engine: str = "glpk",
+) -> Study:
+    """A feasibility study of a case, as a page, a workbook and pictures.
+
+    Parameters
+    ----------
+    case : str or path
+        Path of the case file; the report holds the file, so a case in memory is not enough.
+    out : str or path, optional
+        HTML file to write.
+    xlsx : str or path, optional
+        Workbook to write.
+    pictures : str or path, optional
+        Folder to write the pictures into, each as SVG and PNG.
+    date : str
+        Date to print; none if empty, so that the same input is the same file.
+    force : bool
+        Whether files that are there already may be replaced.
+    engine : {"glpk", "optlang"}
+        Solver whose answers are proven in fractions.
+
+    Returns
+    -------
+    Study
+        All that was found [mol/mol basis], in the plant [kg/h] and [t/y].
+
+    Raises
+    ------
+    InputError
+        If the files must be refused; carries all findings.
+    FileExistsError
+        If a file is there already and ``force`` is not given.
+
+    Examples
+    --------
+    >>> study = report("examples/plant/case.yaml")
+    >>> float(study.plant.figure("vessels").value)
+    16.0
+    """
+    from pathlib import Path
+
+    from yieldnet.reading.study_inputs import case_of_inputs, read_inputs
+    from yieldnet.report.study import study_of
+
+    inputs, findings = read_inputs(os.fspath(case))
+    if inputs is None:
+        raise InputError(findings.sorted())
+    # Made from the texts, as a repetition will make it.
+    read, findings = case_of_inputs(inputs)
+    if read is None:
+        raise InputError(findings.sorted())
+    study = study_of(read, inputs, engine, _versions())
+    if out is not None:
+        from yieldnet.report.html_page import save_page
+
+        save_page(study, Path(out), date, force)
+    if xlsx is not None:
+        from yieldnet.report.workbook import save_workbook
+
+        save_workbook(study, Path(xlsx), force)
+    if pictures is not None:
+        from yieldnet.report.study_pictures import save_study_pictures
+
+        save_study_pictures(study, Path(pictures), force)
+    return study
+
+
+def verify(file: Path) -> Verification:
+    """Whether a report still comes out of the inputs it holds.
+
+    Parameters
+    ----------
+    file : str or path
+        Path of the report.
+
+    Returns
+    -------
+    Verification
+        Every figure and word that differs.
+
+    Raises
+    ------
+    InputError
+        If the file is no report, or its inputs must be refused; carries all findings.
+
+    Examples
+    --------
+    >>> from pathlib import Path
+    >>> from tempfile import TemporaryDirectory
+    >>> with TemporaryDirectory() as folder:
+    ...     study = report("examples/lysine/case.yaml", out=Path(folder) / "study.html")
+    ...     verify(Path(folder) / "study.html").same
+    True
+    """
+    from yieldnet.reading.study_inputs import case_of_inputs, read_report
+    from yieldnet.report.html_page import page_of
+    from yieldnet.report.study import study_of
+    from yieldnet.report.verify import compare_pages
+
+    told, findings = read_report(os.fspath(file))
+    if told is None:
+        raise InputError(findings.sorted())
+    case, findings = case_of_inputs(told.inputs)
+    if case is None:
+        raise InputError(findings.sorted())
+    versions = _versions()
+    page = page_of(study_of(case, told.inputs, told.engine, versions), told.date)
+    return compare_pages(told, page, versions)
+
+
+def _versions() -> tuple[tuple[str, str], ...]:
+    """Programs whose versions a report names."""
+    import platform
+    from importlib.metadata import version
+
+    names = ("yieldnet", "matplotlib", "numpy", "scipy", "swiglpk")
+    return (("Python", platform.python_version()), *((name, version(name)) for name in names))
 
 
 def _as_case(case: Case | Path) -> Case:

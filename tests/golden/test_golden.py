@@ -18,6 +18,8 @@ if TYPE_CHECKING:
 
 HERE = Path(__file__).resolve().parent
 EXAMPLE = "examples/succinate-from-xylose/case.yaml"
+WORKBOOK = "workbook.txt"
+"""Cells of a workbook, which ``test_workbook`` looks at."""
 # Paths as a user in the top folder writes them, so that no path of a machine is printed.
 SCREENS: dict[str, tuple[tuple[str, ...], int]] = {
     "predict.txt": (("predict", EXAMPLE), 0),
@@ -70,7 +72,7 @@ def test_a_screen_is_word_for_word_as_accepted(
 
 def test_no_file_is_left_over() -> None:
     kept = {path.name for path in HERE.iterdir() if path.suffix in {".txt", ".json", ".csv"}}
-    assert kept == set(SCREENS)
+    assert kept == {*SCREENS, WORKBOOK}
 
 
 def test_the_json_of_the_example_is_json_and_says_what_its_text_says() -> None:

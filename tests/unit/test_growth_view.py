@@ -35,9 +35,6 @@ if TYPE_CHECKING:
 
     from yieldnet.prediction.growth import GrowthCurve
 
-# The oldest matplotlib that is allowed calls the newest pyparsing by its former names; that is
-# between the two of them.
-pytestmark = pytest.mark.filterwarnings("ignore:'[A-Za-z]+'.* deprecated:DeprecationWarning")
 SHORT_OF_AIR = "demands: {oxygen: at most 3}\n"
 NO_ETHANOL = "demands: {oxygen: at most 3, ethanol: at most 0}\n"
 NEVER = "demands: {carbon dioxide: at least 6}\n"

@@ -28,9 +28,6 @@ if TYPE_CHECKING:
 
     Run = Callable[..., Result]
 
-# The oldest matplotlib that is allowed calls the newest pyparsing by its former names; that is
-# between the two of them.
-pytestmark = pytest.mark.filterwarnings("ignore:'[A-Za-z]+'.* deprecated:DeprecationWarning")
 EXAMPLE = "examples/succinate-from-xylose/case.yaml"
 SIGNATURES = {".svg": b"<?xml", ".png": b"\x89PNG"}
 

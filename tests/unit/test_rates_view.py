@@ -26,8 +26,6 @@ if TYPE_CHECKING:
 
     Run = Callable[..., Result]
 
-# The oldest matplotlib that is allowed calls the newest pyparsing by its former names.
-pytestmark = pytest.mark.filterwarnings("ignore:'[A-Za-z]+'.* deprecated:DeprecationWarning")
 EXAMPLES = ("batch", "chemostat", "fed-batch", "start-and-end")
 
 

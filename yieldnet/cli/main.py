@@ -24,6 +24,8 @@ _VERBS = {
     "tradeoff": "What two coefficients can be together, as a polygon.",
     "couple": "Smallest knock-out sets that force product.",
     "plant": "Streams, base, oxygen, heat, vessels and raw materials of a plant.",
+    "report": "The whole study as one HTML file, workbook and pictures.",
+    "new": "A commented case to start from, with a plant, a network, a run.",
     "compounds": "The compound and biomass library.",
     "networks": "The networks that ship with yieldnet.",
     "explain": "What a word or a finding code means.",

@@ -588,6 +588,22 @@ _ENTRIES = (
     CatalogueEntry("YN918", "Acid needed instead of base",
         "The cells take up more protons than they give off, so the pH would rise.",
         "Feed the nitrogen source in another form, or leave pH and base out."),
+    # Starting a study
+    CatalogueEntry("YN930", "Nothing to start from",
+        "A first case needs a network, and a pair of substrate and product leads to one.",
+        "Name a substrate and a product of the lists shown, or a network."),
+    CatalogueEntry("YN931", "Several networks fit",
+        "Each stands for another kind of cell, so the choice changes the answer.",
+        "Choose one with --network."),
+    CatalogueEntry("YN932", "Product not from this substrate",
+        "A case whose best value is zero would start a study of nothing.",
+        "Take one of the pairs shown, or another network."),
+    CatalogueEntry("YN933", "File is there already",
+        "What was written by hand would be lost.",
+        "Choose another folder, or let it be replaced with --force."),
+    CatalogueEntry("YN934", "No run to begin with",
+        "The sheet is made of what is measured in the broth.",
+        "Leave --run out, choose another kind, or copy the run file of an example."),
 )
 
 CATALOGUE: Mapping[str, CatalogueEntry] = MappingProxyType(

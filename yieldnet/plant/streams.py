@@ -28,10 +28,21 @@ if TYPE_CHECKING:
     from yieldnet.model.plant import Plant
     from yieldnet.plant.base import ProtonBalance
 
-__all__ = ["CLOSES", "Scale", "balances_of", "check_closed", "ions_of", "scale_of", "streams_of"]
+__all__ = [
+    "CLOSES",
+    "REST_OF_AIR",
+    "Scale",
+    "balances_of",
+    "check_closed",
+    "ions_of",
+    "scale_of",
+    "streams_of",
+]
 
 CLOSES = Fraction(1, 10**9)
 """Largest difference between what enters and what leaves, over the larger, that is let pass [-]."""
+REST_OF_AIR = "rest of the air"
+"""Name of the air that passes through, on both sides."""
 _ZERO = Fraction(0)
 _GRAMS = 1000
 _WATER = Formula.of({"H": Fraction(2), "O": Fraction(1)})
@@ -187,7 +198,7 @@ def streams_of(
         make.add("minerals", True, ash, "as much as leaves as ash of biomass")
     rest = _rest_of_air(case, amounts, scale, passing_air)
     if rest is not None:
-        make.add("rest of the air", True, rest, "dry air blown in less the oxygen used")
+        make.add(REST_OF_AIR, True, rest, "dry air blown in less the oxygen used")
     _leaving(case, plant, amounts, scale, protons, make)
     for stream in tuple(make.found):
         if stream.enters and stream.name.startswith("impurities"):
@@ -195,7 +206,7 @@ def streams_of(
     if ash:
         make.add("ash of biomass", False, ash, "dry weight of biomass x ash")
     if rest is not None:
-        make.add("rest of the air", False, rest, "leaves as it came")
+        make.add(REST_OF_AIR, False, rest, "leaves as it came")
     return tuple(make.found)
 
 

@@ -30,7 +30,7 @@ if TYPE_CHECKING:
 
     NetworkLoader = Callable[[str], tuple[Network | None, Findings]]
 
-__all__ = ["CASE_KEYS", "CaseReader", "load_case"]
+__all__ = ["CASE_KEYS", "CaseReader", "load_case", "parse_case"]
 
 CASE_KEYS = (
     "case",
@@ -76,8 +76,41 @@ def load_case(
         Everything wrong or doubtful, in the case and in its network.
     """
     findings = Findings(limit=MAX_FINDINGS)
+    source = read_text(path, findings)
+    if source is None:
+        return None, findings
+    return _whole(source, path, lambda reader: reader.take_named_network(loaders), findings)
+
+
+def parse_case(
+    source: str, path: str, take: Callable[[CaseReader], None]
+) -> tuple[Case | None, Findings]:
+    """Case of a YAML text, ``None`` if anything is wrong, with all findings.
+
+    Parameters
+    ----------
+    source : str
+        The text.
+    path : str
+        Its name in messages.
+    take : callable
+        Gives the reader its network, if the case names one.
+
+    Returns
+    -------
+    Case or None
+        The case as written.
+    Findings
+        Everything wrong or doubtful, in the case and in its network.
+    """
+    return _whole(source, path, take, Findings(limit=MAX_FINDINGS))
+
+
+def _whole(
+    source: str, path: str, take: Callable[[CaseReader], None], findings: Findings
+) -> tuple[Case | None, Findings]:
     try:
-        case = _load(path, loaders, findings)
+        case = _parse(source, path, take, findings)
     except TooManyFindings:
         findings.items.append(too_many(path))
         return None, findings
@@ -86,9 +119,10 @@ def load_case(
     return replace(case, findings=findings.sorted()), findings
 
 
-def _load(path: str, loaders: Mapping[str, NetworkLoader], findings: Findings) -> Case | None:
-    source = read_text(path, findings)
-    root = compose(source, path, findings) if source is not None else None
+def _parse(
+    source: str, path: str, take: Callable[[CaseReader], None], findings: Findings
+) -> Case | None:
+    root = compose(source, path, findings)
     if root is None:
         return None
     if root.kind is not Kind.MAPPING:
@@ -106,7 +140,7 @@ def _load(path: str, loaders: Mapping[str, NetworkLoader], findings: Findings) -
     fields = Fields(root, "the case file", CASE_KEYS, findings)
     fields.need("case", "Begin the file with 'case: ' and a title.")
     reader = CaseReader(fields=fields, path=path, findings=findings)
-    reader.take_named_network(loaders)
+    take(reader)
     return reader.case(fields.text("case"))
 
 

@@ -11,7 +11,7 @@ from yieldnet.foundation.findings import Finding, SourceSpan, near
 if TYPE_CHECKING:
     from yieldnet.foundation.findings import Findings
 
-__all__ = ["MAX_BYTES", "MAX_FINDINGS", "near_file", "read_text", "too_many"]
+__all__ = ["MAX_BYTES", "MAX_FINDINGS", "decode_text", "near_file", "read_text", "too_many"]
 
 MAX_BYTES = 300_000
 """Largest file that is read: a network of 60 reactions has about 10,000 bytes [byte]."""
@@ -71,7 +71,31 @@ def read_text(path: str, findings: Findings, *, indented_by_tabs: bool = False) 
             hint=near_file(place) or "Check the path.",
         )
         return None
-    text = _decode(raw, path, top, findings)
+    return decode_text(raw, path, findings, indented_by_tabs=indented_by_tabs)
+
+
+def decode_text(
+    raw: bytes, path: str, findings: Findings, *, indented_by_tabs: bool = False
+) -> str | None:
+    """Text of the bytes of a file, or ``None`` with findings that say why not.
+
+    Parameters
+    ----------
+    raw : bytes
+        All bytes of the file.
+    path : str
+        Its name in messages.
+    findings : Findings
+        Receives what is wrong.
+    indented_by_tabs : bool
+        Whether a line may begin with a tab, as it may in a table.
+
+    Returns
+    -------
+    str or None
+        The text, UTF-8 with line feeds.
+    """
+    text = _decode(raw, path, SourceSpan(file=path, line=1, column=1), findings)
     if text is None or indented_by_tabs:
         return text
     return _without_tabs(text, path, findings)

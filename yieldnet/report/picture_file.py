@@ -12,7 +12,7 @@ if TYPE_CHECKING:
 
     from matplotlib.figure import Figure
 
-__all__ = ["COLOURS", "INK", "PICTURES", "save_picture"]
+__all__ = ["COLOURS", "INK", "PICTURES", "picture_text", "save_picture"]
 
 PICTURES = (".svg", ".png")
 """Endings of the files that can be written."""
@@ -26,6 +26,7 @@ _DOTS_PER_INCH = 200
 _STYLE: dict[Any, Any] = {
     "font.family": "DejaVu Sans",
     "font.size": 9,
+    "text.parse_math": False,  # a name with a dollar sign is a name
     "svg.hashsalt": "yieldnet",  # the same picture gives the same file
     "axes.edgecolor": INK,
     "axes.labelcolor": INK,
@@ -67,3 +68,26 @@ def save_picture(draw: Callable[[], Figure], path: Path, replace: bool = False) 
             # No date and no version, so that the same answer is the same file.
             metadata={"Date": None} if kind == "svg" else {"Software": None},
         )
+
+
+def picture_text(draw: Callable[[], Figure]) -> str:
+    """SVG of a picture, in the style of all pictures.
+
+    Parameters
+    ----------
+    draw : callable
+        Makes the picture.
+
+    Returns
+    -------
+    str
+        The file as a text; the same picture gives the same text.
+    """
+    from io import StringIO
+
+    from matplotlib import rc_context
+
+    text = StringIO()
+    with rc_context(_STYLE):
+        draw().savefig(text, format="svg", bbox_inches="tight", metadata={"Date": None})
+    return text.getvalue()
