@@ -19,7 +19,6 @@ from yieldnet.reading.names import NameBook
 from yieldnet.reading.network_file import load_network
 from yieldnet.reading.nodes import Kind, Node, compose
 from yieldnet.reading.overall import OverallReader
-from yieldnet.reading.plant_section import PlantReader
 from yieldnet.reading.shipped import find_shipped, shipped_names
 from yieldnet.reading.source import MAX_FINDINGS, near_file, read_text, too_many
 
@@ -226,16 +225,21 @@ class CaseReader:
         knock_outs = choices.knock_outs(fields.get("knock-outs"), strain)
         parameter_set = choices.parameter_set(fields.get("parameter set"))
         parameters = choices.parameters(fields.get("parameters"))
-        plant = PlantReader(
-            findings=self.findings,
-            resolve=self.book.resolve,
-            basis=self.overall.basis.name if self.overall.basis is not None else "",
-            coefficients=self.overall.coefficients,
-            aim=aim,
-            has_network=self.has_network,
-            ph=conditions.get("pH"),
-            uptake=conditions.get("substrate uptake"),
-        ).plant(fields.get("plant"))
+        plant = None
+        if (section := fields.get("plant")) is not None:
+            # Most cases have none, and its tables need not be loaded then.
+            from yieldnet.reading.plant_section import PlantReader
+
+            plant = PlantReader(
+                findings=self.findings,
+                resolve=self.book.resolve,
+                basis=self.overall.basis.name if self.overall.basis is not None else "",
+                coefficients=self.overall.coefficients,
+                aim=aim,
+                has_network=self.has_network,
+                ph=conditions.get("pH"),
+                uptake=conditions.get("substrate uptake"),
+            ).plant(section)
         if equation is None or self.overall.basis is None:
             return None
         return Case(
