@@ -11,6 +11,7 @@ from yieldnet.foundation.units import UnitError, read_unit, yield_factor
 from yieldnet.model.network import Direction
 from yieldnet.prediction.spread import SEED
 from yieldnet.report.figures import (
+    assumption_rows,
     figure,
     p_words,
     percent,
@@ -110,14 +111,7 @@ def data_view(result: Reconciliation, unit: str = "mol/mol") -> DataView:
         aim=_aim(result),
         remarks=_remarks(result),
         next=_next(result),
-        assumptions=tuple(
-            (
-                item.text,
-                "" if item.value is None else f"{figure(item.value)} {item.unit}".strip(),
-                " ".join(item.source.split()),
-            )
-            for item in result.assumptions
-        ),
+        assumptions=assumption_rows(result.assumptions),
     )
 
 

@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING
 from yieldnet.chemistry.thermochemistry import CALORIMETRIC_OXYGEN_HEAT, TEXTBOOK_OXYGEN_HEAT
 from yieldnet.model.network import BIOMASS
 from yieldnet.prediction.result import Outcome
-from yieldnet.report.figures import figure
+from yieldnet.report.figures import assumption_rows, figure
 from yieldnet.report.table import Table
 from yieldnet.report.view import PredictionView, view_of
 
@@ -54,14 +54,7 @@ def energetics_view(result: Energetics) -> PredictionView:
         proof_tables=(),
         remarks=_remarks(result),
         findings=tuple((str(item.severity), str(item)) for item in result.findings),
-        assumptions=tuple(
-            (
-                item.text,
-                "" if item.value is None else f"{figure(item.value)} {item.unit}".strip(),
-                " ".join(item.source.split()),
-            )
-            for item in result.assumptions
-        ),
+        assumptions=assumption_rows(result.assumptions),
     )
 
 

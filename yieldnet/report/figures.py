@@ -7,10 +7,14 @@ from math import floor, log10
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
+    from collections.abc import Iterable
+
+    from yieldnet.foundation.sourced import Assumption
     from yieldnet.optimum.ranges import Range
 
 __all__ = [
     "DIGITS",
+    "assumption_rows",
     "figure",
     "p_words",
     "percent",
@@ -156,3 +160,26 @@ def with_error(value: Fraction | float, sd: Fraction | float) -> str:
         return figure(value)
     places = max(0, 1 - floor(log10(size)))
     return f"{float(value):.{places}f}±{size:.{places}f}"
+
+
+def assumption_rows(assumptions: Iterable[Assumption]) -> tuple[tuple[str, str, str], ...]:
+    """Assumptions as a screen shows them.
+
+    Parameters
+    ----------
+    assumptions : iterable of Assumption
+        In the order of the rows.
+
+    Returns
+    -------
+    tuple of (str, str, str)
+        Text, value with its unit (empty where there is none), source on one line.
+    """
+    return tuple(
+        (
+            item.text,
+            "" if item.value is None else f"{figure(item.value)} {item.unit}".strip(),
+            " ".join(item.source.split()),
+        )
+        for item in assumptions
+    )

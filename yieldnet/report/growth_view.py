@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING, Any
 
 from yieldnet.chemistry.growth_atp import published_atp_yields
 from yieldnet.report.atp_yield_view import published_form, range_words
-from yieldnet.report.figures import figure
+from yieldnet.report.figures import assumption_rows, figure
 from yieldnet.report.json_form import FORMAT, findings_form
 from yieldnet.report.table import Table
 
@@ -185,14 +185,7 @@ def _breaks(curve: GrowthCurve) -> list[str]:
 
 def growth_assumptions(curve: GrowthCurve) -> tuple[tuple[str, str, str], ...]:
     """Assumptions as text, value with unit, source."""
-    return tuple(
-        (
-            item.text,
-            "" if item.value is None else f"{figure(item.value)} {item.unit}".strip(),
-            " ".join(item.source.split()),
-        )
-        for item in curve.assumptions
-    )
+    return assumption_rows(curve.assumptions)
 
 
 def refused_growth_form(findings: Iterable[Finding]) -> dict[str, Any]:

@@ -6,7 +6,7 @@ from dataclasses import dataclass
 from fractions import Fraction
 from typing import TYPE_CHECKING
 
-from yieldnet.report.figures import figure
+from yieldnet.report.figures import assumption_rows, figure
 from yieldnet.report.table import Table
 
 if TYPE_CHECKING:
@@ -98,13 +98,9 @@ def plant_view(sheets: Sequence[PlantSheet], *, formulas: bool = False) -> Plant
     several = len(sheets) > 1
     letters = [f"{letter}: " if several else "" for letter in _LETTERS[: len(sheets)]]
     taken = dict.fromkeys(
-        (
-            (letter if several else "") + item.text,
-            "" if item.value is None else f"{figure(item.value)} {item.unit}".strip(),
-            " ".join(item.source.split()),
-        )
+        ((letter if several else "") + text, value, source)
         for letter, sheet in zip(letters, sheets, strict=True)
-        for item in sheet.assumptions
+        for text, value, source in assumption_rows(sheet.assumptions)
     )
     worst = max(item.residual for sheet in sheets for item in sheet.balances)
     return PlantView(

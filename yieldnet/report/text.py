@@ -318,7 +318,7 @@ def print_rates(out: Console, result: RateResult) -> None:
     result : RateResult
         What was found.
     """
-    from yieldnet.report.figures import figure
+    from yieldnet.report.figures import assumption_rows
     from yieldnet.report.rates_view import rates_headline, rates_tables, state_title
 
     run = result.run
@@ -332,14 +332,7 @@ def print_rates(out: Console, result: RateResult) -> None:
         out.print(wrapped(rates_headline(result, state), "", "  "), style="bold")
         for table in rates_tables(result, state):
             print_table(out, table)
-    taken = [
-        (
-            item.text,
-            "" if item.value is None else f"{figure(item.value)} {item.unit}".strip(),
-            " ".join(item.source.split()),
-        )
-        for item in result.assumptions
-    ]
+    taken = assumption_rows(result.assumptions)
     _print_end(out, result.findings, taken)
 
 

@@ -12,7 +12,7 @@ from yieldnet.model.network import Direction
 from yieldnet.optimum.ranges import Range
 from yieldnet.prediction.layers import switched_off
 from yieldnet.report.atp_yield_view import atp_yield_line
-from yieldnet.report.figures import figure, p_words, percent, range_text, signed
+from yieldnet.report.figures import assumption_rows, figure, p_words, percent, range_text, signed
 from yieldnet.report.table import Table
 from yieldnet.report.why_view import (
     conflict_lines,
@@ -118,14 +118,7 @@ def view_of(result: Prediction, unit: str = "mol/mol") -> PredictionView:
         proof_tables=proof_tables(result),
         remarks=_remarks(result),
         findings=tuple((str(item.severity), str(item)) for item in result.findings),
-        assumptions=tuple(
-            (
-                item.text,
-                "" if item.value is None else f"{figure(item.value)} {item.unit}".strip(),
-                " ".join(item.source.split()),
-            )
-            for item in result.assumptions
-        ),
+        assumptions=assumption_rows(result.assumptions),
     )
 
 
